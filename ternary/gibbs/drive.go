@@ -1,0 +1,492 @@
+package gibbs
+
+import "math"
+
+// Drive is the driving force of a phase against a plane of potentials.
+type Drive struct {
+	D float64    // J per mole of formula unit; > 0 the phase would grow
+	Y [3]float64 // end-member fractions at the maximum
+	C [3]float64 // moles of components there: ∂D/∂μ (envelope theorem)
+	S float64    // entropy of the phase there, J/(mol K): ∂D/∂T at constant μ
+}
+
+const (
+	// driveTol stops Newton's iteration on the fractions: D is stationary there,
+	// so its own error is the square of this, and ∂D/∂μ is exact to it.
+	driveTol = 1e-13
+	// driveSame tells two maxima apart, in end-member fraction.
+	driveSame = 1e-6
+	// driveRounds bounds Newton's iteration; it takes 3 to 8 in practice.
+	driveRounds = 60
+)
+
+// gaps returns d_k = μ·c_k − G°_k(T) of the end-members. A potential of −Inf
+// counts only where the end-member holds that component.
+func (p *Phase) gaps(mu *[3]float64, T float64) (d [3]float64) {
+	for k := range p.Members {
+		m := &p.Members[k]
+		if m.G != (TFunc{}) {
+			d[k] = -m.G.At(T)
+		}
+		for i, c := range m.C {
+			if c != 0 {
+				d[k] += mu[i] * c
+			}
+		}
+	}
+	return d
+}
+
+// Drive returns the driving force of the phase against the plane mu (J/mol of
+// each component) at T, the largest of μ·c(y) − G(y, T) over all y:
+//
+//   - a stoichiometric phase needs no search;
+//   - ideal mixing has the closed form s·RT·ln Σ exp(d_k/sRT);
+//   - otherwise Newton's method, from one start where the phase is known to be
+//     convex, else from enough starts to find every local maximum.
+//
+// A component potential of −Inf (a liquid on an edge) is ordinary: D is −Inf if
+// every end-member holds that component, and +Inf if one holds it with a
+// negative coefficient.
+func (p *Phase) Drive(mu *[3]float64, T float64) Drive {
+	d := p.gaps(mu, T)
+	if len(p.Members) == 1 {
+		return p.pure(0, d[0], T)
+	}
+	if q, done := p.atInfinity(&d, T); done {
+		return q
+	}
+	y := p.idealFractions(&d, T)
+	if p.Mixing.ideal() {
+		return p.finish(&d, y, T)
+	}
+	if T > p.convexAbove {
+		return p.climb(&d, y, T)
+	}
+	best := Drive{D: math.Inf(-1)}
+	for _, q := range p.maxima(&d, T) {
+		if q.D > best.D {
+			best = q
+		}
+	}
+	return best
+}
+
+// DriveFrom is the local maximum of the driving force that Newton's method
+// reaches from fractions y: the branch of a phase that can unmix.
+func (p *Phase) DriveFrom(mu *[3]float64, T float64, y [3]float64) Drive {
+	d := p.gaps(mu, T)
+	if len(p.Members) == 1 {
+		return p.pure(0, d[0], T)
+	}
+	if q, done := p.atInfinity(&d, T); done {
+		return q
+	}
+	if p.Mixing.ideal() {
+		return p.finish(&d, p.idealFractions(&d, T), T)
+	}
+	return p.climb(&d, y, T)
+}
+
+// Maxima returns every local maximum of the driving force, highest first. A
+// phase that cannot unmix has one.
+func (p *Phase) Maxima(mu *[3]float64, T float64) []Drive {
+	if T > p.convexAbove || len(p.Members) == 1 {
+		return []Drive{p.Drive(mu, T)}
+	}
+	d := p.gaps(mu, T)
+	if q, done := p.atInfinity(&d, T); done {
+		return []Drive{q}
+	}
+	return p.maxima(&d, T)
+}
+
+// atInfinity deals with a plane on which some end-member is at ±Inf and no
+// other choice is left.
+func (p *Phase) atInfinity(d *[3]float64, T float64) (Drive, bool) {
+	finite, last := 0, 0
+	for k := range p.Members {
+		if math.IsInf(d[k], 1) {
+			return p.pure(k, d[k], T), true
+		}
+		if !math.IsInf(d[k], -1) {
+			finite++
+			last = k
+		}
+	}
+	switch finite {
+	case 0:
+		return p.pure(0, math.Inf(-1), T), true
+	case 1:
+		return p.pure(last, d[last], T), true
+	}
+	return Drive{}, false
+}
+
+// pure is the driving force at y_k = 1.
+func (p *Phase) pure(k int, d, T float64) Drive {
+	m := &p.Members[k]
+	q := Drive{D: d, C: m.C, S: -m.G.Slope(T)}
+	q.Y[k] = 1
+	return q
+}
+
+// idealFractions are the fractions that ideal mixing would have.
+func (p *Phase) idealFractions(d *[3]float64, T float64) (y [3]float64) {
+	n := len(p.Members)
+	top := d[0]
+	for k := 1; k < n; k++ {
+		top = math.Max(top, d[k])
+	}
+	srt := p.Mixing.Sites * rGas * T
+	sum := 0.0
+	for k := 0; k < n; k++ {
+		y[k] = math.Exp((d[k] - top) / srt)
+		sum += y[k]
+	}
+	for k := 0; k < n; k++ {
+		y[k] /= sum
+	}
+	return y
+}
+
+// finish evaluates D, C and S at fractions y.
+func (p *Phase) finish(d *[3]float64, y [3]float64, T float64) Drive {
+	q := Drive{Y: y}
+	rs := p.Mixing.Sites * rGas
+	for k := range p.Members {
+		if y[k] == 0 {
+			continue
+		}
+		m := &p.Members[k]
+		ln := math.Log(y[k])
+		q.D += y[k] * (d[k] - rs*T*ln)
+		q.S -= y[k] * (m.G.Slope(T) + rs*ln)
+		for i, c := range m.C {
+			q.C[i] += y[k] * c
+		}
+	}
+	if !p.Mixing.ideal() {
+		var ex excess
+		p.Mixing.excess(&y, atT(T), &ex)
+		q.D -= ex.g
+		if p.hasSlope {
+			p.Mixing.excess(&y, slopeT(T), &ex)
+			q.S -= ex.g
+		}
+	}
+	return q
+}
+
+// climb is Newton's method on the log-ratios of the fractions, with steps
+// halved until the driving force does not fall.
+func (p *Phase) climb(d *[3]float64, y [3]float64, T float64) Drive {
+	n := len(p.Members)
+	live := [3]bool{}
+	base := -1 // the largest fraction is the denominator of the log-ratios
+	for k := 0; k < n; k++ {
+		live[k] = !math.IsInf(d[k], -1)
+		if !live[k] {
+			y[k] = 0
+			continue
+		}
+		if y[k] < 1e-300 {
+			y[k] = 1e-300
+		}
+		if base < 0 || y[k] > y[base] {
+			base = k
+		}
+	}
+	var idx [2]int
+	free := 0
+	for k := 0; k < n; k++ {
+		if live[k] && k != base {
+			idx[free] = k
+			free++
+		}
+	}
+	w := atT(T)
+	srt := p.Mixing.Sites * rGas * T
+	h := p.height(d, &y, srt, w)
+	for round := 0; round < driveRounds; round++ {
+		step, size := p.newton(d, &y, srt, w, base, idx, free)
+		if size <= driveTol {
+			break
+		}
+		scale := 1.0
+		if size > 3 {
+			scale = 3 / size
+		}
+		moved := false
+		for try := 0; try < 40; try++ {
+			z := shift(y, base, idx, free, step, scale)
+			hz := p.height(d, &z, srt, w)
+			if hz >= h-1e-14*math.Abs(h) {
+				moved = z != y
+				y, h = z, hz
+				break
+			}
+			scale /= 2
+		}
+		if !moved {
+			break
+		}
+	}
+	return p.finish(d, y, T)
+}
+
+// height is the function climbed: μ·c(y) − G(y).
+func (p *Phase) height(d, y *[3]float64, srt float64, w weights) float64 {
+	var ex excess
+	p.Mixing.excess(y, w, &ex)
+	v := -ex.g
+	for k := range p.Members {
+		if y[k] > 0 {
+			v += y[k] * (d[k] - srt*math.Log(y[k]))
+		}
+	}
+	return v
+}
+
+// newton returns the step in the log-ratios ln(y_k/y_base) that makes all
+// d_k − m_k equal, m_k the potential of mixing, and its largest entry. Where
+// the phase is not convex it returns an uphill step instead.
+func (p *Phase) newton(d, y *[3]float64, srt float64, w weights, base int, idx [2]int, free int) (step [2]float64, size float64) {
+	var ex excess
+	p.Mixing.excess(y, w, &ex)
+	mex := ex.partial(y)
+	var f [2]float64
+	for a := 0; a < free; a++ {
+		k := idx[a]
+		f[a] = (d[k] - mex[k] - srt*math.Log(y[k])) - (d[base] - mex[base] - srt*math.Log(y[base]))
+	}
+	// ∂f_a/∂η_b with ∂y_k/∂η_b = y_k(δ_kb − y_b)
+	var j [2][2]float64
+	for a := 0; a < free; a++ {
+		for b := 0; b < free; b++ {
+			kb := idx[b]
+			v := ex.h[idx[a]][kb] - ex.h[base][kb]
+			for l := range p.Members {
+				v -= (ex.h[idx[a]][l] - ex.h[base][l]) * y[l]
+			}
+			j[a][b] = v * y[kb]
+			if a == b {
+				j[a][b] += srt
+			}
+		}
+	}
+	if free == 1 {
+		if j[0][0] > 1e-3*srt {
+			step[0] = f[0] / j[0][0]
+		} else {
+			step[0] = f[0] / srt
+		}
+		return step, math.Abs(step[0])
+	}
+	det := j[0][0]*j[1][1] - j[0][1]*j[1][0]
+	if j[0][0] > 0 && det > 1e-6*srt*srt {
+		step[0] = (f[0]*j[1][1] - f[1]*j[0][1]) / det
+		step[1] = (f[1]*j[0][0] - f[0]*j[1][0]) / det
+	} else {
+		step[0], step[1] = f[0]/srt, f[1]/srt
+	}
+	return step, math.Max(math.Abs(step[0]), math.Abs(step[1]))
+}
+
+// shift multiplies the ratios to the base by exp(scale·step).
+func shift(y [3]float64, base int, idx [2]int, free int, step [2]float64, scale float64) [3]float64 {
+	for a := 0; a < free; a++ {
+		y[idx[a]] *= math.Exp(scale * step[a])
+	}
+	s := y[0] + y[1] + y[2]
+	return [3]float64{y[0] / s, y[1] / s, y[2] / s}
+}
+
+// Starts of the search for all maxima of a phase that can unmix: a mesh fine
+// enough that each basin of a Redlich–Kister model of low order holds a node.
+const (
+	startMesh2 = 24
+	startMesh3 = 10
+)
+
+// maxima finds all local maxima of the driving force: the nodes of a mesh that
+// are not lower than their neighbours are starts of Newton's method.
+func (p *Phase) maxima(d *[3]float64, T float64) []Drive {
+	var starts [][3]float64
+	if len(p.Members) == 2 || p.dead(d) {
+		starts = p.starts2(d, T)
+	} else {
+		starts = p.starts3(d, T)
+	}
+	out := make([]Drive, 0, 3)
+	for _, y := range starts {
+		q := p.climb(d, y, T)
+		if !p.isMaximum(q.Y, T) {
+			continue
+		}
+		known := false
+		for i := range out {
+			if near(out[i].Y, q.Y) {
+				known = true
+				if q.D > out[i].D {
+					out[i] = q
+				}
+			}
+		}
+		if !known {
+			out = append(out, q)
+		}
+	}
+	for i := 1; i < len(out); i++ { // insertion sort: highest first
+		for k := i; k > 0 && out[k].D > out[k-1].D; k-- {
+			out[k], out[k-1] = out[k-1], out[k]
+		}
+	}
+	return out
+}
+
+// dead reports that a phase of three end-members has one at −Inf.
+func (p *Phase) dead(d *[3]float64) bool {
+	for k := range p.Members {
+		if math.IsInf(d[k], -1) {
+			return true
+		}
+	}
+	return false
+}
+
+// isMaximum rejects points at which Newton's method stalled on a saddle.
+func (p *Phase) isMaximum(y [3]float64, T float64) bool {
+	for k := range p.Members {
+		if y[k] <= 1e-12 {
+			return true // against a wall of the ideal entropy
+		}
+	}
+	return p.ConvexAt(y, T)
+}
+
+func near(a, b [3]float64) bool {
+	return math.Abs(a[0]-b[0])+math.Abs(a[1]-b[1])+math.Abs(a[2]-b[2]) < 2*driveSame
+}
+
+// starts2 returns the mesh maxima along the two live end-members.
+func (p *Phase) starts2(d *[3]float64, T float64) [][3]float64 {
+	a, b := -1, -1
+	for k := range p.Members {
+		if math.IsInf(d[k], -1) {
+			continue
+		}
+		if a < 0 {
+			a = k
+		} else {
+			b = k
+		}
+	}
+	srt, w := p.Mixing.Sites*rGas*T, atT(T)
+	var h [startMesh2 + 1]float64
+	at := func(i int) (y [3]float64) {
+		t := (float64(i) + 0.01) / (startMesh2 + 0.02)
+		y[a], y[b] = t, 1-t
+		return y
+	}
+	for i := range h {
+		y := at(i)
+		h[i] = p.height(d, &y, srt, w)
+	}
+	var out [][3]float64
+	for i := range h {
+		if (i == 0 || h[i] >= h[i-1]) && (i == startMesh2 || h[i] >= h[i+1]) {
+			out = append(out, at(i))
+		}
+	}
+	return out
+}
+
+// starts3 returns the mesh maxima of a phase of three end-members.
+func (p *Phase) starts3(d *[3]float64, T float64) [][3]float64 {
+	const n = startMesh3
+	srt, w := p.Mixing.Sites*rGas*T, atT(T)
+	var h [n + 1][n + 1]float64
+	at := func(i, j int) [3]float64 {
+		const e = 0.01
+		s := n + 3*e
+		return [3]float64{(float64(i) + e) / s, (float64(j) + e) / s, (float64(n-i-j) + e) / s}
+	}
+	for i := 0; i <= n; i++ {
+		for j := 0; i+j <= n; j++ {
+			y := at(i, j)
+			h[i][j] = p.height(d, &y, srt, w)
+		}
+	}
+	var out [][3]float64
+	for i := 0; i <= n; i++ {
+		for j := 0; i+j <= n; j++ {
+			top := true
+			for _, s := range [6][2]int{{1, 0}, {-1, 0}, {0, 1}, {0, -1}, {1, -1}, {-1, 1}} {
+				a, b := i+s[0], j+s[1]
+				if a >= 0 && b >= 0 && a+b <= n && h[a][b] > h[i][j] {
+					top = false
+				}
+			}
+			if top {
+				out = append(out, at(i, j))
+			}
+		}
+	}
+	return out
+}
+
+// Curvature returns the second derivatives of D with respect to the plane,
+// ∂c/∂μ at fractions y: the 3×3 matrix C·(∂²G/∂y²)⁻¹·Cᵀ on Σ dy = 0, and ∂c/∂T
+// at constant μ. It is zero for a stoichiometric phase. ok is false where the
+// phase is not convex.
+func (p *Phase) Curvature(y [3]float64, T float64) (h [3][3]float64, ct [3]float64, ok bool) {
+	n := len(p.Members) - 1
+	live := [3]int{}
+	m := 0
+	for k := 0; k <= n; k++ {
+		if y[k] > 0 {
+			live[m] = k
+			m++
+		}
+	}
+	if m <= 1 {
+		return h, ct, true
+	}
+	var q Potentials
+	p.Potentials(&y, T, &q)
+	last := live[m-1]
+	var g, inv [2][2]float64
+	for a := 0; a < m-1; a++ {
+		for b := 0; b < m-1; b++ {
+			ka, kb := live[a], live[b]
+			g[a][b] = q.DY[ka][kb] - q.DY[ka][last] - q.DY[last][kb] + q.DY[last][last]
+		}
+	}
+	if m == 2 {
+		if g[0][0] <= 0 {
+			return h, ct, false
+		}
+		inv[0][0] = 1 / g[0][0]
+	} else {
+		det := g[0][0]*g[1][1] - g[0][1]*g[1][0]
+		if det <= 0 || g[0][0] <= 0 {
+			return h, ct, false
+		}
+		inv = [2][2]float64{{g[1][1] / det, -g[0][1] / det}, {-g[1][0] / det, g[0][0] / det}}
+	}
+	for a := 0; a < m-1; a++ {
+		for b := 0; b < m-1; b++ {
+			ka, kb := live[a], live[b]
+			for i := 0; i < 3; i++ {
+				ci := p.Members[ka].C[i] - p.Members[last].C[i]
+				for l := 0; l < 3; l++ {
+					h[i][l] += ci * inv[a][b] * (p.Members[kb].C[l] - p.Members[last].C[l])
+				}
+				// dy = −inv·∂(m_k − m_last)/∂T dT at constant μ
+				ct[i] -= ci * inv[a][b] * (q.DT[kb] - q.DT[last])
+			}
+		}
+	}
+	return h, ct, true
+}

@@ -1,0 +1,74 @@
+package gibbs
+
+import (
+	"fmt"
+	"math"
+
+	"thalweg/ternary"
+)
+
+// Fusion describes melting at the reference pressure: liquid minus solid.
+type Fusion struct {
+	T  float64 // melting point, K
+	H  float64 // heat of fusion at T, J per mole of formula unit
+	Cp float64 // change of heat capacity, J/(mol K), taken constant
+	V  float64 // change of volume, m³/mol, taken constant
+}
+
+// Melting is the standard Gibbs energy of a solid counted from its own liquid:
+//
+//	−ΔG_fus = −{ΔH(1 − T/Tm) + ΔCp[(T − Tm) − T ln(T/Tm)] + ΔV·dP}
+//
+// with dP in Pa above the reference pressure. With ΔCp = 0 and an ideal liquid
+// it leads to the freezing-point law of Schröder and van Laar.
+func Melting(f Fusion, dP float64) TFunc {
+	return TFunc{
+		A: -f.H + f.Cp*f.T - f.V*dP,
+		B: f.H/f.T - f.Cp*(1+math.Log(f.T)),
+		C: f.Cp,
+	}
+}
+
+// CompoundMelting is Melting counted from the model liquid of the compound's
+// own composition c (moles of components per formula unit), so that the
+// congruent melting point, real or metastable, is met exactly whatever the
+// liquid's mixing terms are. It reports an error when c is outside the
+// triangle, where there is no such liquid.
+func CompoundMelting(liquid *Phase, c [3]float64, f Fusion, dP float64) (TFunc, error) {
+	sum := c[0] + c[1] + c[2]
+	var x [3]float64
+	for i := range c {
+		if c[i] < 0 {
+			return TFunc{}, fmt.Errorf("the composition %v is outside the triangle, so it has no liquid of its own", c)
+		}
+		x[i] = c[i] / sum
+	}
+	col := liquid.Column(x)
+	g := Melting(f, dP)
+	for i := range c {
+		if c[i] > 0 {
+			g = g.Add(col[i], c[i])
+		}
+	}
+	return g, nil
+}
+
+// Transition is the standard Gibbs energy of a form that is in equilibrium with
+// another, base, at temperature T: the change base → this form takes up H
+// (J/mol) and V (m³/mol), so G = G_base + H(1 − t/T) + V·dP.
+func Transition(base TFunc, T, H, V, dP float64) TFunc {
+	return base.Add(TFunc{A: H + V*dP, B: -H / T}, 1)
+}
+
+// Reaction is the standard Gibbs energy Σ ν·G + ΔH − TΔS + ΔV·dP of a phase
+// formed from others by a reaction with stoichiometric numbers nu.
+func Reaction(from []TFunc, nu []float64, H, S, V, dP float64) TFunc {
+	g := TFunc{A: H + V*dP, B: -S}
+	for i, f := range from {
+		g = g.Add(f, nu[i])
+	}
+	return g
+}
+
+// rGas is the molar gas constant, J/(mol K).
+const rGas = ternary.R
