@@ -68,7 +68,7 @@ func ParseFormula(s string) (Formula, error) {
 		return Formula{}, &FormulaError{Text: s, Column: 1, Reason: "it is empty"}
 	}
 	if len(s) > maxFormulaLength {
-		return Formula{}, &FormulaError{s[:8] + "…", 1, fmt.Sprintf("it is longer than %d bytes", maxFormulaLength)}
+		return Formula{}, &FormulaError{"…", 1, fmt.Sprintf("it is longer than %d bytes", maxFormulaLength)}
 	}
 	if !utf8.ValidString(s) {
 		return Formula{}, &FormulaError{s, 1, "it is not valid UTF-8"}

@@ -16,6 +16,10 @@ const (
 	driveTol = 1e-13
 	// driveSame tells two maxima apart, in end-member fraction.
 	driveSame = 1e-6
+	// driveSure is the size of a Newton step from which the iteration converges
+	// quadratically, so that it need not be checked against the height, whose
+	// rounding would hide the gain.
+	driveSure = 1e-3
 	// driveRounds bounds Newton's iteration; it takes 3 to 8 in practice.
 	driveRounds = 60
 )
@@ -32,6 +36,9 @@ func (p *Phase) gaps(mu *[3]float64, T float64) (d [3]float64) {
 			if c != 0 {
 				d[k] += mu[i] * c
 			}
+		}
+		if math.IsNaN(d[k]) { // at an apex: +Inf and −Inf; what is absent cannot be made
+			d[k] = math.Inf(-1)
 		}
 	}
 	return d
@@ -182,21 +189,7 @@ func (p *Phase) finish(d *[3]float64, y [3]float64, T float64) Drive {
 // halved until the driving force does not fall.
 func (p *Phase) climb(d *[3]float64, y [3]float64, T float64) Drive {
 	n := len(p.Members)
-	live := [3]bool{}
-	base := -1 // the largest fraction is the denominator of the log-ratios
-	for k := 0; k < n; k++ {
-		live[k] = !math.IsInf(d[k], -1)
-		if !live[k] {
-			y[k] = 0
-			continue
-		}
-		if y[k] < 1e-300 {
-			y[k] = 1e-300
-		}
-		if base < 0 || y[k] > y[base] {
-			base = k
-		}
-	}
+	live, base := p.begin(d, &y, T)
 	var idx [2]int
 	free := 0
 	for k := 0; k < n; k++ {
@@ -217,11 +210,16 @@ func (p *Phase) climb(d *[3]float64, y [3]float64, T float64) Drive {
 		if size > 3 {
 			scale = 3 / size
 		}
+		if size < driveSure {
+			y = shift(y, base, idx, free, step, 1)
+			h = p.height(d, &y, srt, w)
+			continue
+		}
 		moved := false
 		for try := 0; try < 40; try++ {
 			z := shift(y, base, idx, free, step, scale)
 			hz := p.height(d, &z, srt, w)
-			if hz >= h-1e-14*math.Abs(h) {
+			if hz >= h-1e-12*srt {
 				moved = z != y
 				y, h = z, hz
 				break
@@ -233,6 +231,68 @@ func (p *Phase) climb(d *[3]float64, y [3]float64, T float64) Drive {
 		}
 	}
 	return p.finish(d, y, T)
+}
+
+// begin prepares the start of a climb: members at −Inf are taken out, members
+// that the start lacks are given their dilute share, and the largest fraction
+// becomes the denominator of the log-ratios.
+func (p *Phase) begin(d, y *[3]float64, T float64) (live [3]bool, base int) {
+	base = -1
+	sum := 0.0
+	for k := range p.Members {
+		live[k] = !math.IsInf(d[k], -1)
+		if !live[k] {
+			y[k] = 0
+		}
+		sum += y[k]
+		if live[k] && (base < 0 || y[k] > y[base]) {
+			base = k
+		}
+	}
+	for k := range y {
+		y[k] /= sum
+	}
+	if !(sum > 0) { // the start held only what is absent
+		*y = p.idealFractions(d, T)
+		for k := range p.Members {
+			if live[k] && y[k] > y[base] {
+				base = k
+			}
+		}
+	}
+	missing := false
+	for k := range p.Members {
+		missing = missing || live[k] && y[k] < tinyFraction
+	}
+	if missing {
+		p.fillDilute(d, y, &live, base, T)
+	}
+	return live, base
+}
+
+// tinyFraction is a fraction below which a start is replaced by the dilute
+// estimate: Newton's steps in the log-ratio would take long to climb back.
+const tinyFraction = 1e-30
+
+// fillDilute sets fractions that are all but zero to Henry's law: the value at
+// which d_k − m_k equals that of the base member, with the excess potentials of
+// the others.
+func (p *Phase) fillDilute(d, y *[3]float64, live *[3]bool, base int, T float64) {
+	var ex excess
+	p.Mixing.excess(y, atT(T), &ex)
+	mex := ex.partial(y)
+	srt := p.Mixing.Sites * rGas * T
+	lambda := d[base] - mex[base] - srt*math.Log(y[base])
+	sum := 0.0
+	for k := range p.Members {
+		if live[k] && y[k] < tinyFraction {
+			y[k] = math.Exp(math.Max(-690, math.Min(0, (d[k]-mex[k]-lambda)/srt)))
+		}
+		sum += y[k]
+	}
+	for k := range y {
+		y[k] /= sum
+	}
 }
 
 // height is the function climbed: μ·c(y) − G(y).

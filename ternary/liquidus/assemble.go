@@ -26,11 +26,26 @@ func (e *engine) assemble() *Projection {
 		default:
 			nd.Coefficients = reaction(nd.Liquid, nd.Solids)
 			nd.Kind = kindOfNode(nd.Coefficients)
+			if nd.Coefficients != nil {
+				if nd.Heat = e.heatOf(nd); nd.Heat < 0 {
+					nd.Kind = Metatectic
+				}
+			}
 		}
 	}
 	e.nameNodes(p)
 	e.buildFields(p)
 	return p
+}
+
+// heatOf is T·(S of one mole of liquid − S of the solids made from it).
+func (e *engine) heatOf(nd *Node) float64 {
+	_, s, _ := e.sys.Liquid.Gibbs(nd.Liquid, nd.T)
+	for k, st := range nd.Solids {
+		_, sk, _ := e.sys.Solids[st.Phase].Gibbs(st.Y, nd.T)
+		s -= nd.Coefficients[k] * sk
+	}
+	return nd.T * s
 }
 
 // splitCurve cuts a followed curve at its extrema of T into arcs.
@@ -76,7 +91,7 @@ func (e *engine) extremumKind(pts []tracePoint, i int) Kind {
 }
 
 func (e *engine) nodeAt(k Kind, p tracePoint) int {
-	return e.addNode(Node{Kind: k, Edge: -1, Liquid: compositionAt(p.z[0], p.z[1]), T: p.z[2] * e.tRef, Solids: []gibbs.State{p.a, p.b}})
+	return e.addNode(Node{Kind: k, Edge: -1, Liquid: p.x, T: p.z[2] * e.tRef, Solids: []gibbs.State{p.a, p.b}})
 }
 
 // addArc appends an arc, turned so that T does not rise along it.
@@ -118,7 +133,7 @@ func (e *engine) addArc(p *Projection, r rawCurve, pts []tracePoint, from, to in
 // looks down the curve.
 func (e *engine) curvePoint(q tracePoint) Point {
 	pt := Point{
-		Liquid:   compositionAt(q.z[0], q.z[1]),
+		Liquid:   q.x,
 		T:        q.z[2] * e.tRef,
 		Solids:   [2]gibbs.State{q.a, q.b},
 		Consumed: -1,
@@ -165,18 +180,18 @@ func (e *engine) kindChange(p, q tracePoint, kp Point) (tracePoint, bool) {
 	for round := 0; round < 40; round++ {
 		u := (lo + hi) / 2
 		var s site
-		z := hermiteVec(p.z, q.z, p.t, q.t, h, u)
-		if !inside(z) {
+		at := betweenPlaces(p.place(), q.place(), p.t, q.t, h, u)
+		if !at.inside() {
 			return found, false
 		}
-		s.set(e, z)
+		s.set(e, at)
 		a := constraint{phase: p.a.Phase, y: p.a.Y}
 		b := constraint{phase: p.b.Phase, y: p.b.Y}
 		dir, solved := e.correct(&s, &a, &b, q.z.minus(p.z).scaled(1/h))
 		if !solved {
 			return found, false
 		}
-		m := tracePoint{z: s.z, t: dir, a: a.state(), b: b.state()}
+		m := tracePoint{x: s.x, z: s.z, t: dir, a: a.state(), b: b.state()}
 		k := e.curvePoint(m)
 		if k.Kind == kp.Kind && k.Consumed == kp.Consumed {
 			lo = u
@@ -211,8 +226,8 @@ func (e *engine) nameNodes(p *Projection) {
 		}
 		return a.T > b.T
 	})
-	prefix := map[Kind]string{Eutectic: "E", ReactionPoint: "R", Peritectic: "P", Transition: "T"}
-	small := map[Kind]string{Eutectic: "e", ReactionPoint: "r", Peritectic: "p", Transition: "t",
+	prefix := map[Kind]string{Metatectic: "M", Eutectic: "E", ReactionPoint: "R", Peritectic: "P", Transition: "T"}
+	small := map[Kind]string{Metatectic: "d", Eutectic: "e", ReactionPoint: "r", Peritectic: "p", Transition: "t",
 		Maximum: "m", Minimum: "n", LoopStart: "o", AtApex: "a"}
 	count := map[string]int{}
 	place := make([]int, n)
@@ -268,7 +283,8 @@ func (e *engine) finish(p *Projection) {
 
 // checkDirections asserts the rule that joins the kind of an invariant point to
 // its curves: along the curve on which solid C is absent, T falls towards the
-// point exactly when C is a product of L ↔ aA + bB + cC (Schreinemakers).
+// point exactly when C is a product of L ↔ aA + bB + cC as it runs on cooling
+// (Schreinemakers).
 func (e *engine) checkDirections(p *Projection) {
 	for i := range p.Curves {
 		c := &p.Curves[i]
@@ -285,7 +301,7 @@ func (e *engine) checkDirections(p *Projection) {
 					continue
 				}
 				towards := at == c.To
-				if c.From != c.To && math.Abs(nd.Coefficients[k]) > 1e-6 && (nd.Coefficients[k] > 0) != towards {
+				if c.From != c.To && math.Abs(nd.Coefficients[k]) > 1e-6 && (nd.Coefficients[k]*nd.Heat > 0) != towards {
 					e.problem(fmt.Sprintf("at %s the curve of %s and %s runs against its reaction", nd.ID, e.symbol(c.Solids[0]), e.symbol(c.Solids[1])))
 				}
 			}

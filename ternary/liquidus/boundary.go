@@ -100,8 +100,8 @@ func (e *engine) followFromEdge(ed *edge, node int, at float64) {
 		if d := s.z.minus(z0); d.norm() > 1e-12 {
 			t0 = d.scaled(1 / d.norm())
 		}
-		head := tracePoint{z: z0, t: t0, a: sa, b: sb}
-		e.finishCurve(node, []tracePoint{head}, newTracer(e, a, b).run(s.z, dir, false))
+		head := tracePoint{x: nd.Liquid, z: z0, t: t0, a: sa, b: sb}
+		e.finishCurve(node, []tracePoint{head}, newTracer(e, a, b).run(s.place(), dir, false))
 		return
 	}
 	e.problem(fmt.Sprintf("the curve of %s and %s could not be followed from the edge at %s", e.symbol(sa.Phase), e.symbol(sb.Phase), e.place(nd.Liquid)))
@@ -132,9 +132,8 @@ func (e *engine) followFromNode(node int, p port) {
 			c = k
 		}
 	}
-	px, py := nd.Liquid.XY()
 	var s site
-	s.set(e, vec{px, py, nd.T / e.tRef})
+	s.setOn(e, nd.Liquid, nd.T)
 	_, ga := a.eval(e, &s)
 	_, gb := b.eval(e, &s)
 	_, gc := c.eval(e, &s)
@@ -146,7 +145,7 @@ func (e *engine) followFromNode(node int, p port) {
 	if gc.dot(dir) > 0 {
 		dir = dir.scaled(-1)
 	}
-	e.finishCurve(node, nil, newTracer(e, a, b).run(s.z, dir, false))
+	e.finishCurve(node, nil, newTracer(e, a, b).run(s.place(), dir, false))
 }
 
 // followSeed follows a curve both ways from a point found on it.
@@ -157,12 +156,12 @@ func (e *engine) followSeed(s *site, a, b constraint) {
 	if !ok {
 		return
 	}
-	ahead := newTracer(e, a, b).run(s.z, dir, true)
+	ahead := newTracer(e, a, b).run(s.place(), dir, true)
 	if ahead.end == endClosed {
 		e.addCurve(rawCurve{a: a.phase, b: b.phase, from: -1, to: -1, points: ahead.points})
 		return
 	}
-	back := newTracer(e, a, b).run(s.z, dir.scaled(-1), false)
+	back := newTracer(e, a, b).run(s.place(), dir.scaled(-1), false)
 	from, ok1 := e.endNode(a.phase, b.phase, back)
 	to, ok2 := e.endNode(a.phase, b.phase, ahead)
 	if !ok1 || !ok2 {
@@ -211,7 +210,7 @@ func (e *engine) addCurve(c rawCurve) {
 // endNode finds or makes the node at which a followed curve ends.
 func (e *engine) endNode(a, b int, t traced) (int, bool) {
 	last := t.points[len(t.points)-1]
-	x := compositionAt(last.z[0], last.z[1])
+	x := last.x
 	T := last.z[2] * e.tRef
 	switch t.end {
 	case endPhase:
@@ -251,7 +250,7 @@ func (e *engine) apexNode(k int, p tracePoint) int {
 // invariant finds or makes the node at which three solids coexist with liquid.
 func (e *engine) invariant(p tracePoint, third int) (int, bool) {
 	var s site
-	s.set(e, p.z)
+	s.set(e, p.place())
 	c := constraint{phase: third}
 	c.y = e.sys.Solids[third].Drive(&s.pot.Mu, s.T).Y
 	c.eval(e, &s)

@@ -61,28 +61,21 @@ func solve3(a, b, c vec, f vec) (vec, bool) {
 	}, true
 }
 
-// inside reports whether all fractions at z are positive.
-func inside(z vec) bool {
-	x := compositionAt(z[0], z[1])
-	return x[0] > 0 && x[1] > 0 && x[2] > 0 && z[2] > 0
-}
-
-// intoInside shortens the step from z so that no fraction loses more than nine
-// tenths of itself.
-func intoInside(z, step vec) vec {
-	x := compositionAt(z[0], z[1])
+// intoInside shortens the step so that no fraction loses more than nine tenths of
+// itself and none of the numbers moves too far at once.
+func intoInside(p place, step vec) vec {
 	s := 1.0
-	for i := range x {
+	for i, x := range p.x {
 		d := dxdp[i][0]*step[0] + dxdp[i][1]*step[1]
-		if d < 0 && x[i]+s*d < 0.1*x[i] {
-			s = 0.9 * x[i] / -d
+		if d < 0 && x+s*d < 0.1*x {
+			s = 0.9 * x / -d
 		}
 	}
 	if r := step.flat() * s; r > newtonReach {
 		s *= newtonReach / r
 	}
-	if t := math.Abs(step[2]) * s; t > 0.5*z[2] {
-		s *= 0.5 * z[2] / t
+	if t := math.Abs(step[2]) * s; t > 0.5*p.t {
+		s *= 0.5 * p.t / t
 	}
 	return step.scaled(s)
 }
@@ -107,11 +100,12 @@ func (e *engine) solvePoint(s *site, a, b, c *constraint) bool {
 		if !ok {
 			return r <= newtonTol
 		}
-		step = intoInside(s.z, step)
-		if step.norm() < 1e-15 {
+		step = intoInside(s.place(), step)
+		next := s.place().moved(step, 1)
+		if next == s.place() {
 			return r <= newtonTol
 		}
-		s.set(e, s.z.plus(step, 1))
+		s.set(e, next)
 	}
 	return best <= newtonTol
 }
@@ -135,11 +129,11 @@ func (e *engine) correct(s *site, a, b *constraint, t vec) (vec, bool) {
 		if !ok || step.norm() > newtonReach {
 			return vec{}, false
 		}
-		z := s.z.plus(step, 1)
-		if !inside(z) {
-			z = s.z.plus(intoInside(s.z, step), 1)
+		next := s.place().moved(step, 1)
+		if !next.inside() {
+			next = s.place().moved(intoInside(s.place(), step), 1)
 		}
-		s.set(e, z)
+		s.set(e, next)
 		if s.z.minus(origin).norm() > newtonReach {
 			return vec{}, false
 		}
@@ -166,8 +160,8 @@ func tangent(ga, gb, t vec) (vec, bool) {
 // and for points a fixed small distance inside one.
 func (e *engine) solveOnLine(s *site, a, b *constraint, x0, dx ternary.Composition, at, T float64) (float64, bool) {
 	best := math.Inf(1)
+	x := onLine(x0, dx, at) // moved step by step, to keep small fractions precise
 	for round := 0; round < 4*newtonRounds; round++ {
-		x := onLine(x0, dx, at)
 		s.setOn(e, x, T)
 		fa, ua, va := a.along(e, s, dx)
 		fb, ub, vb := b.along(e, s, dx)
@@ -196,6 +190,9 @@ func (e *engine) solveOnLine(s *site, a, b *constraint, x0, dx ternary.Compositi
 		}
 		at += k * ds
 		T += k * dT
+		for i := range x {
+			x[i] += k * ds * dx[i]
+		}
 	}
 	return at, best <= newtonTol
 }

@@ -183,9 +183,7 @@ func (e *engine) splitEdge(ed *edge, x0, dx ternary.Composition, a, b edgeSample
 		return
 	}
 	if math.IsInf(a.T, 1) || math.IsInf(b.T, 1) {
-		if math.IsInf(a.T, 1) && math.IsInf(b.T, 1) {
-			return // the edge is not a binary system: see infiniteEdge
-		}
+		return // a solid outside the triangle: the edge is not a binary system
 	}
 	if depth > 60 {
 		e.problem(fmt.Sprintf("the edge without %s has a point where more than two solids meet near %.6g", e.sys.Components[ed.k].Symbol, a.at))

@@ -135,8 +135,6 @@ func (e *engine) sides(c *Curve) (left, right int) {
 	var y, z vec
 	y[0], y[1] = p.Liquid.XY()
 	z[0], z[1] = q.Liquid.XY()
-	y[2], z[2] = p.T/e.tRef, q.T/e.tRef
-	mid := y.plus(z, 1).scaled(0.5)
 	a := constraint{phase: c.Solids[0], y: q.Solids[0].Y}
 	b := constraint{phase: c.Solids[1], y: q.Solids[1].Y}
 	if n == 1 {
@@ -146,7 +144,7 @@ func (e *engine) sides(c *Curve) (left, right int) {
 		}
 	}
 	var s site
-	s.set(e, mid)
+	s.setOn(e, p.Liquid.Lerp(q.Liquid, 0.5), (p.T+q.T)/2)
 	_, ga := a.eval(e, &s)
 	_, gb := b.eval(e, &s)
 	d := z.minus(y)

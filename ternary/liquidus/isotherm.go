@@ -9,6 +9,7 @@ import (
 
 // crossingPoint is where an isotherm meets a boundary curve or an edge.
 type crossingPoint struct {
+	x     ternary.Composition
 	z     vec
 	curve int    // index of the curve, or -1
 	edge  int    // index of the absent component, or -1
@@ -92,8 +93,7 @@ func (e *engine) curveCrossings(p *Projection, T float64) []crossingPoint {
 		for j := range x {
 			x[j] = math.Max(x[j], 1e-12)
 		}
-		px, py := x.XY()
-		s.set(e, vec{px, py, T / e.tRef})
+		s.setOn(e, x, T)
 		ca := constraint{phase: c.Solids[0], y: b.Solids[0].Y}
 		cb := constraint{phase: c.Solids[1], y: b.Solids[1].Y}
 		ct := constraint{phase: isothermal, t: T}
@@ -101,7 +101,7 @@ func (e *engine) curveCrossings(p *Projection, T float64) []crossingPoint {
 			e.problem(fmt.Sprintf("the crossing of the isotherm of %.1f K with the curve of %s and %s was not found", T, e.symbol(c.Solids[0]), e.symbol(c.Solids[1])))
 			continue
 		}
-		out = append(out, crossingPoint{z: s.z, curve: i, edge: -1, solid: c.Solids, y: [2][3]float64{ca.y, cb.y}})
+		out = append(out, crossingPoint{x: s.x, z: s.z, curve: i, edge: -1, solid: c.Solids, y: [2][3]float64{ca.y, cb.y}})
 	}
 	return out
 }
@@ -137,8 +137,9 @@ func (e *engine) edgeCrossings(ed *edge, T float64) []crossingPoint {
 			}
 		}
 		at := (lo + hi) / 2
-		px, py := onLine(x0, dx, at).XY()
-		out = append(out, crossingPoint{z: vec{px, py, T / e.tRef}, curve: -1, edge: ed.k, at: at,
+		x := onLine(x0, dx, at)
+		px, py := x.XY()
+		out = append(out, crossingPoint{x: x, z: vec{px, py, T / e.tRef}, curve: -1, edge: ed.k, at: at,
 			solid: [2]int{a.after, a.after}, y: [2][3]float64{sol.Y, sol.Y}})
 	}
 	return out
@@ -152,16 +153,16 @@ func (e *engine) isothermFrom(c *crossingPoint, side int, T float64, cs []crossi
 	var head []tracePoint
 	var dir vec
 	if c.edge >= 0 {
-		z, d, ok := e.isothermInside(c, &a, t)
+		at, d, ok := e.isothermInside(c, &a, t)
 		if !ok {
 			return nil, false
 		}
-		s.set(e, z)
-		step := z.minus(c.z)
-		head = append(head, tracePoint{z: c.z, t: step.scaled(1 / step.norm())})
+		s.set(e, at)
+		step := s.z.minus(c.z)
+		head = append(head, tracePoint{x: c.x, z: c.z, t: step.scaled(1 / step.norm())})
 		dir = d
 	} else {
-		s.set(e, c.z)
+		s.setOn(e, c.x, T)
 		b := constraint{phase: c.solid[1-side], y: c.y[1-side]}
 		_, ga := a.eval(e, &s)
 		_, gb := b.eval(e, &s)
@@ -174,13 +175,13 @@ func (e *engine) isothermFrom(c *crossingPoint, side int, T float64, cs []crossi
 		}
 		dir = d
 	}
-	tr := newTracer(e, a, t).run(s.z, dir, false)
+	tr := newTracer(e, a, t).run(s.place(), dir, false)
 	pts := append(head, tr.points...)
 	return pts, e.matchEnd(tr, c.solid[side], cs)
 }
 
 // isothermInside solves the isotherm's first point inside the edge.
-func (e *engine) isothermInside(c *crossingPoint, a *constraint, t constraint) (z, dir vec, ok bool) {
+func (e *engine) isothermInside(c *crossingPoint, a *constraint, t constraint) (at place, dir vec, ok bool) {
 	i, j := (c.edge+1)%3, (c.edge+2)%3
 	for in := edgeStart; in > 1e-9; in /= 10 {
 		x0, dx := edgeLine(i, j)
@@ -191,18 +192,18 @@ func (e *engine) isothermInside(c *crossingPoint, a *constraint, t constraint) (
 		x0[c.edge] = in
 		ca, ct := *a, t
 		var s site
-		at, solved := e.solveOnLine(&s, &ca, &ct, x0, dx, c.at, t.t)
-		if !solved || math.Abs(at-c.at) > 0.05+20*in || e.worst(&s, a.phase, a.phase) > zeroDrive {
+		pos, solved := e.solveOnLine(&s, &ca, &ct, x0, dx, c.at, t.t)
+		if !solved || math.Abs(pos-c.at) > 0.05+20*in || e.worst(&s, a.phase, a.phase) > zeroDrive {
 			continue
 		}
 		_, ga := ca.eval(e, &s)
 		d, good := tangent(ga, vec{0, 0, 1}, vec{dxdp[c.edge][0], dxdp[c.edge][1], 0})
 		if good {
 			*a = ca
-			return s.z, d, true
+			return s.place(), d, true
 		}
 	}
-	return vec{}, vec{}, false
+	return place{}, vec{}, false
 }
 
 // matchEnd marks the crossing at which a traced isotherm ends as used.
@@ -259,9 +260,8 @@ func (e *engine) closedIsotherm(f *Field, T float64, lines []IsothermLine) ([]tr
 	if !f.contains(x) || onLines(x, f.Solid, lines) {
 		return nil, false
 	}
-	px, py := x.XY()
 	var s site
-	s.set(e, vec{px, py, T / e.tRef})
+	s.setOn(e, x, T)
 	a := constraint{phase: f.Solid, y: sol.Y}
 	t := constraint{phase: isothermal, t: T}
 	_, ga := a.eval(e, &s)
@@ -269,7 +269,7 @@ func (e *engine) closedIsotherm(f *Field, T float64, lines []IsothermLine) ([]tr
 	if !ok {
 		return nil, false
 	}
-	tr := newTracer(e, a, t).run(s.z, dir, true)
+	tr := newTracer(e, a, t).run(s.place(), dir, true)
 	return tr.points, tr.end == endClosed
 }
 

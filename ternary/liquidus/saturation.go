@@ -107,16 +107,22 @@ func (e *engine) drive(p *gibbs.Phase, c *column, T float64) gibbs.Drive {
 func (e *engine) saturationPure(p *gibbs.Phase, c *column) saturated {
 	m := &p.Members[0]
 	f := gibbs.TFunc{A: -m.G.A, B: -m.G.B, C: -m.G.C}
+	above := false
 	for i, n := range m.C {
-		if n == 0 {
-			continue
+		switch {
+		case n == 0:
+		case !c.zero[i]:
+			f = f.Add(c.mu[i], n)
+		case n > 0: // holds a component that is absent
+			return saturated{T: math.Inf(-1)}
+		default:
+			above = true
 		}
-		if c.zero[i] {
-			return saturated{T: math.Copysign(math.Inf(1), -n)}
-		}
-		f = f.Add(c.mu[i], n)
 	}
 	y := [3]float64{1}
+	if above {
+		return saturated{T: math.Inf(1), Y: y}
+	}
 	if f.At(e.tCap) > 0 {
 		return saturated{T: math.Inf(1), Y: y}
 	}

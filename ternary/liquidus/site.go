@@ -36,6 +36,44 @@ func compositionAt(px, py float64) ternary.Composition {
 	return ternary.Composition{x0, 1 - x0 - x2, x2}
 }
 
+// place is a point of that space that keeps its fractions apart: near a side of
+// the triangle a small fraction cannot be had from Cartesian coordinates to the
+// precision that its logarithm needs.
+type place struct {
+	x ternary.Composition
+	t float64 // T/tRef
+}
+
+func (p place) vec() vec {
+	px, py := p.x.XY()
+	return vec{px, py, p.t}
+}
+
+// moved is the place a step further.
+func (p place) moved(v vec, s float64) place {
+	for i := range p.x {
+		p.x[i] += s * (dxdp[i][0]*v[0] + dxdp[i][1]*v[1])
+	}
+	p.t += s * v[2]
+	return p
+}
+
+func (p place) inside() bool { return p.x[0] > 0 && p.x[1] > 0 && p.x[2] > 0 && p.t > 0 }
+
+// betweenPlaces is the cubic through p and q with unit tangents tp and tq.
+func betweenPlaces(p, q place, tp, tq vec, h, u float64) (m place) {
+	for i := range m.x {
+		a := dxdp[i][0]*tp[0] + dxdp[i][1]*tp[1]
+		b := dxdp[i][0]*tq[0] + dxdp[i][1]*tq[1]
+		m.x[i] = hermite(p.x[i], q.x[i], a*h, b*h, u)
+	}
+	m.t = hermite(p.t, q.t, tp[2]*h, tq[2]*h, u)
+	if !m.inside() {
+		m.x, m.t = p.x.Lerp(q.x, u), p.t+u*(q.t-p.t)
+	}
+	return m
+}
+
 // site is a liquid at a temperature with its chemical potentials.
 type site struct {
 	z   vec
@@ -44,17 +82,11 @@ type site struct {
 	pot gibbs.Potentials
 }
 
-// set evaluates the site at z. Fractions must be positive, or exactly zero
+// set evaluates the site at a place. Fractions must be positive, or exactly zero
 // for a component that is absent.
-func (s *site) set(e *engine, z vec) {
-	s.z = z
-	s.x = compositionAt(z[0], z[1])
-	s.T = z[2] * e.tRef
-	x := [3]float64(s.x)
-	e.sys.Liquid.Potentials(&x, s.T, &s.pot)
-}
+func (s *site) set(e *engine, p place) { s.setOn(e, p.x, p.t*e.tRef) }
 
-// setOn evaluates the site at composition x, whose zero fractions are exact.
+// setOn evaluates the site at composition x and temperature T.
 func (s *site) setOn(e *engine, x ternary.Composition, T float64) {
 	px, py := x.XY()
 	s.z = vec{px, py, T / e.tRef}
@@ -62,6 +94,8 @@ func (s *site) setOn(e *engine, x ternary.Composition, T float64) {
 	y := [3]float64(x)
 	e.sys.Liquid.Potentials(&y, T, &s.pot)
 }
+
+func (s *site) place() place { return place{s.x, s.z[2]} }
 
 // gradient returns the derivative of μ·c with respect to z at constant c, and
 // adds the entropy S of a phase to its temperature part.

@@ -3,6 +3,7 @@ package liquidus
 import (
 	"math"
 
+	"thalweg/ternary"
 	"thalweg/ternary/gibbs"
 )
 
@@ -38,10 +39,13 @@ const (
 
 // tracePoint is one solved point of a curve.
 type tracePoint struct {
+	x        ternary.Composition
 	z, t     vec // place and unit tangent in the direction of travel
 	a, b     gibbs.State
 	extremum bool // T is stationary here
 }
+
+func (p *tracePoint) place() place { return place{p.x, p.z[2]} }
 
 // traced is a followed curve.
 type traced struct {
@@ -93,49 +97,40 @@ func (t *tracer) look(dir vec) {
 	}
 }
 
-// run follows the curve from z, a solved point, in direction dir. skip is a
-// phase that is saturated at the start (the third phase of an invariant point),
-// or -1.
-func (t *tracer) run(z, dir vec, closable bool) traced {
+// run follows the curve from a solved point in direction dir. A closable curve
+// may come back to its start.
+func (t *tracer) run(from place, dir vec, closable bool) traced {
 	e := t.e
 	out := traced{points: make([]tracePoint, 0, 48)}
-	t.s.set(e, z)
+	t.s.set(e, from)
 	a, b := t.a, t.b
 	a.eval(e, &t.s)
 	b.eval(e, &t.s)
 	t.a, t.b = a, b
-	out.points = append(out.points, t.point(z, dir))
+	p := t.point(dir)
+	out.points = append(out.points, p)
 	t.look(dir)
 	h := stepFirst
-	start := tracePoint{z: z, t: dir}
+	start := p
 	travelled := 0.0
-	for steps := 0; steps < stepsMax; steps++ {
-		if h < stepMin {
-			out.end = endLost
-			return out
-		}
-		if f, k := exitDistance(z, dir); f <= h {
-			if p, ok := t.land(z, dir, f, k); ok {
-				out.points = append(out.points, p)
+	for steps := 0; steps < stepsMax && h >= stepMin; steps++ {
+		if f, k := exitDistance(p.x, p.t); f <= h {
+			if q, ok := t.land(&p, f, k); ok {
+				out.points = append(out.points, q)
 				out.end, out.edge = endEdge, k
 				return out
 			}
 			h = math.Min(h, 0.7*f)
 		}
-		t.s.set(e, z.plus(dir, h))
 		t.a, t.b = a, b
-		next, ok := e.correct(&t.s, &t.a, &t.b, dir)
-		turn := math.Inf(1)
-		if ok {
-			turn = math.Acos(math.Max(-1, math.Min(1, next.dot(dir))))
-		}
-		if turn > turnMax {
+		q, turn, ok := t.step(&p, h)
+		if !ok {
 			h /= 2
 			continue
 		}
-		chord := t.s.z.minus(z).norm()
+		chord := q.z.minus(p.z).norm()
 		t.now, t.old = t.old, t.now
-		t.look(next)
+		t.look(q.t)
 		hit, shy := t.events(chord)
 		if shy && h > eventStep {
 			t.now, t.old = t.old, t.now
@@ -143,38 +138,35 @@ func (t *tracer) run(z, dir vec, closable bool) traced {
 			continue
 		}
 		if hit {
-			p, phase, ok := t.locate(z, dir, t.s.z, next, a, b)
+			m, phase, ok := t.locate(&p, &q, a, b)
 			if !ok {
 				t.now, t.old = t.old, t.now
 				h /= 2
 				continue
 			}
-			if q, found := t.extremum(z, dir, p.z, p.t, a, b); found {
-				out.points = append(out.points, q)
+			if x, found := t.extremum(&p, &m, a, b); found {
+				out.points = append(out.points, x)
 			}
-			out.points = append(out.points, p)
+			out.points = append(out.points, m)
 			out.end, out.phase = endPhase, phase
 			return out
 		}
-		zn := t.s.z
-		an, bn := t.a, t.b
-		p := t.point(zn, next)
-		if q, found := t.extremum(z, dir, zn, next, a, b); found {
-			out.points = append(out.points, q)
+		if x, found := t.extremum(&p, &q, a, b); found {
+			out.points = append(out.points, x)
 		}
-		if closable && travelled > 2*chord && passes(start, z, zn, chord) && next.dot(start.t) > 0.9 {
+		if closable && travelled > 2*chord && passes(start, p.z, q.z, chord) && q.t.dot(start.t) > 0.9 {
 			out.points = append(out.points, out.points[0])
 			out.end = endClosed
 			return out
 		}
-		out.points = append(out.points, p)
+		out.points = append(out.points, q)
 		travelled += chord
-		z, dir, a, b = zn, next, an, bn
-		if k := apexAt(zn); k >= 0 {
+		p, a, b = q, t.a, t.b
+		if k := apexAt(p.x); k >= 0 {
 			out.end, out.edge = endApex, k
 			return out
 		}
-		if zn[2]*e.tRef > e.tCap {
+		if p.z[2]*e.tRef > e.tCap {
 			out.end = endLimit
 			return out
 		}
@@ -184,18 +176,34 @@ func (t *tracer) run(z, dir vec, closable bool) traced {
 	return out
 }
 
-func (t *tracer) point(z, dir vec) tracePoint {
-	p := tracePoint{z: z, t: dir, a: t.a.state()}
+// step predicts along the tangent and corrects; ok is false when the curve was
+// not found or turned too much.
+func (t *tracer) step(p *tracePoint, h float64) (q tracePoint, turn float64, ok bool) {
+	at := p.place().moved(p.t, h)
+	if !at.inside() {
+		return q, 0, false
+	}
+	t.s.set(t.e, at)
+	dir, ok := t.e.correct(&t.s, &t.a, &t.b, p.t)
+	if !ok {
+		return q, 0, false
+	}
+	turn = math.Acos(math.Max(-1, math.Min(1, dir.dot(p.t))))
+	return t.point(dir), turn, turn <= turnMax
+}
+
+// point is the point at the site.
+func (t *tracer) point(dir vec) tracePoint {
+	p := tracePoint{x: t.s.x, z: t.s.z, t: dir, a: t.a.state()}
 	if t.b.phase != isothermal {
 		p.b = t.b.state()
 	}
 	return p
 }
 
-// exitDistance is how far along dir the line from z leaves the triangle, and
+// exitDistance is how far along dir the line from x leaves the triangle, and
 // which component vanishes there.
-func exitDistance(z, dir vec) (float64, int) {
-	x := compositionAt(z[0], z[1])
+func exitDistance(x ternary.Composition, dir vec) (float64, int) {
 	best, which := math.Inf(1), -1
 	for i := range x {
 		d := dxdp[i][0]*dir[0] + dxdp[i][1]*dir[1]
@@ -210,9 +218,9 @@ func exitDistance(z, dir vec) (float64, int) {
 // apex is taken to have arrived.
 const apexNear = 1e-6
 
-// apexAt returns the component of which z is all but pure, or -1.
-func apexAt(z vec) int {
-	for i, v := range compositionAt(z[0], z[1]) {
+// apexAt returns the component of which x is all but pure, or -1.
+func apexAt(x ternary.Composition) int {
+	for i, v := range x {
 		if v > 1-apexNear {
 			return i
 		}
@@ -221,16 +229,17 @@ func apexAt(z vec) int {
 }
 
 // land solves the curve's end on the edge where component k vanishes.
-func (t *tracer) land(z, dir vec, f float64, k int) (tracePoint, bool) {
+func (t *tracer) land(from *tracePoint, f float64, k int) (tracePoint, bool) {
 	e := t.e
+	z, dir := from.z, from.t
 	i, j := (k+1)%3, (k+2)%3
-	aim := z.plus(dir, f)
-	x := compositionAt(aim[0], aim[1])
+	aim := from.place().moved(dir, f)
+	x := aim.x
 	x0, dx := edgeLine(i, j)
 	at := math.Max(1e-9, math.Min(1-1e-9, x[j]/(x[i]+x[j])))
 	a, b := t.a, t.b
 	var s site
-	_, ok := e.solveOnLine(&s, &a, &b, x0, dx, at, aim[2]*e.tRef)
+	_, ok := e.solveOnLine(&s, &a, &b, x0, dx, at, aim.t*e.tRef)
 	if !ok || s.z.minus(z).norm() > 4*f+1e-6 {
 		return tracePoint{}, false
 	}
@@ -240,7 +249,7 @@ func (t *tracer) land(z, dir vec, f float64, k int) (tracePoint, bool) {
 			return tracePoint{}, false // another phase comes first
 		}
 	}
-	p := tracePoint{z: s.z, t: dir, a: a.state()}
+	p := tracePoint{x: s.x, z: s.z, t: dir, a: a.state()}
 	if b.phase != isothermal {
 		p.b = b.state()
 	}
@@ -305,10 +314,11 @@ func hermiteRise(d0, d1, m0, m1 float64) float64 {
 	return (lo + hi) / 2
 }
 
-// locate solves for the first point between z0 and z1 at which a watched phase
-// is saturated.
-func (t *tracer) locate(z0, t0, z1, t1 vec, a, b constraint) (tracePoint, int, bool) {
+// locate solves for the first point between p and q at which a watched phase is
+// saturated.
+func (t *tracer) locate(p, q *tracePoint, a, b constraint) (tracePoint, int, bool) {
 	e := t.e
+	z0, z1 := p.z, q.z
 	h := z1.minus(z0).norm()
 	dir := z1.minus(z0).scaled(1 / h)
 	var found tracePoint
@@ -323,11 +333,7 @@ func (t *tracer) locate(z0, t0, z1, t1 vec, a, b constraint) (tracePoint, int, b
 			u = hermiteRise(math.Min(w0.d, 0), w1.d, w0.m*h, w1.m*h)
 		}
 		var s site
-		z := hermiteVec(z0, z1, t0, t1, h, u)
-		if !inside(z) {
-			z = z0.plus(z1.minus(z0), u)
-		}
-		s.set(e, z)
+		s.set(e, betweenPlaces(p.place(), q.place(), p.t, q.t, h, u))
 		ca, cb := a, b
 		cc := constraint{phase: w1.phase}
 		cc.y = e.sys.Solids[cc.phase].Drive(&s.pot.Mu, s.T).Y
@@ -341,7 +347,7 @@ func (t *tracer) locate(z0, t0, z1, t1 vec, a, b constraint) (tracePoint, int, b
 		}
 		if along < best {
 			best, phase = along, w1.phase
-			found = tracePoint{z: s.z, a: ca.state()}
+			found = tracePoint{x: s.x, z: s.z, a: ca.state()}
 			_, ga := ca.eval(e, &s)
 			_, gb := cb.eval(e, &s)
 			if cb.phase != isothermal {
@@ -362,7 +368,8 @@ func hermiteVec(z0, z1, t0, t1 vec, h, u float64) (z vec) {
 }
 
 // extremum looks for a stationary temperature between two points of a curve.
-func (t *tracer) extremum(z0, t0, z1, t1 vec, a, b constraint) (tracePoint, bool) {
+func (t *tracer) extremum(p, q *tracePoint, a, b constraint) (tracePoint, bool) {
+	z0, t0, z1, t1 := p.z, p.t, q.z, q.t
 	if !t.extrema || t0[2]*t1[2] >= 0 {
 		return tracePoint{}, false
 	}
@@ -379,13 +386,13 @@ func (t *tracer) extremum(z0, t0, z1, t1 vec, a, b constraint) (tracePoint, bool
 			u = (lo + hi) / 2
 		}
 		var s site
-		s.set(e, hermiteVec(z0, z1, t0, t1, h, u))
+		s.set(e, betweenPlaces(p.place(), q.place(), t0, t1, h, u))
 		ca, cb := a, b
 		dir, solved := e.correct(&s, &ca, &cb, chord.scaled(1/h))
 		if !solved {
 			return best, false
 		}
-		best = tracePoint{z: s.z, t: dir, a: ca.state(), b: cb.state(), extremum: true}
+		best = tracePoint{x: s.x, z: s.z, t: dir, a: ca.state(), b: cb.state(), extremum: true}
 		ok = true
 		if math.Abs(dir[2]) < 1e-12 || hi-lo < 1e-13 {
 			break

@@ -15,6 +15,7 @@ const (
 	ReactionPoint Kind = "reaction point" // L + A → B + C
 	Peritectic    Kind = "peritectic"     // L + A + B → C
 	Transition    Kind = "transition"     // two forms of one composition meet a third solid
+	Metatectic    Kind = "metatectic"     // the reaction makes liquid on cooling: it takes up heat from left to right
 	// Points on an edge of the triangle reuse Eutectic, Peritectic and
 	// Transition for two solids.
 	Maximum   Kind = "maximum"    // T has a maximum along a boundary curve
@@ -47,6 +48,9 @@ type Node struct {
 	// of liquid components (negative: the solid is consumed with the liquid).
 	// Nil where the reaction is not unique.
 	Coefficients []float64
+	// Heat is what the reaction, read from the liquid to the solids, releases: J
+	// per mole of liquid components. It is negative at a metatectic.
+	Heat float64
 	// Residual is the largest |driving force| of the solids, divided by RT.
 	Residual float64
 }

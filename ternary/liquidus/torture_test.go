@@ -1,0 +1,151 @@
+package liquidus
+
+import (
+	"flag"
+	"fmt"
+	"os"
+	"regexp"
+	"sort"
+	"strings"
+	"testing"
+
+	"thalweg/ternary/gibbs"
+	"thalweg/ternary/internal/trial"
+)
+
+var (
+	long   = flag.Bool("long", false, "run the long variants of the tests")
+	report = flag.String("report", "", "write the seeds that failed, with their problems, to this `file`")
+)
+
+// outcome is what became of one random system.
+type outcome struct {
+	seed     int64
+	solids   int
+	unmixed  bool // the liquid separates into two: outside the scope of a complete projection
+	panicked string
+	problems []string
+	p        *Projection
+}
+
+// try computes one system and never lets a panic out.
+func try(seed int64, sys *gibbs.System, o Options) (out outcome) {
+	out.seed, out.solids = seed, len(sys.Solids)
+	defer func() {
+		if r := recover(); r != nil {
+			out.panicked = fmt.Sprint(r)
+			out.problems = append(out.problems, "panic: "+out.panicked)
+		}
+	}()
+	p, err := Compute(sys, o)
+	if err != nil {
+		out.problems = []string{err.Error()}
+		return out
+	}
+	out.p = p
+	out.problems = p.Checks.Problems
+	out.unmixed = len(p.Unmixed) > 0
+	if p.Checks.Passed != (len(p.Checks.Problems) == 0) {
+		out.problems = append(out.problems, "Passed disagrees with Problems")
+	}
+	if p.Checks.Passed && p.Checks.Euler != 0 {
+		out.problems = append(out.problems, "Passed although Euler's formula fails")
+	}
+	return out
+}
+
+var digits = regexp.MustCompile(`[0-9][0-9.e+−-]*`)
+
+// reason strips a problem of names and numbers, so that like ones count together.
+func reason(problem string, sys *gibbs.System) string {
+	for _, s := range sys.Solids {
+		problem = strings.ReplaceAll(problem, " "+s.Symbol+" ", " S ")
+	}
+	for _, c := range sys.Components {
+		problem = strings.ReplaceAll(problem, c.Symbol, "X")
+	}
+	return digits.ReplaceAllString(problem, "#")
+}
+
+// torture runs n seeds and returns the number complete, and of systems whose
+// liquid stays one.
+func torture(t *testing.T, first int64, n int, o trial.Options) (complete, single int) {
+	t.Helper()
+	reasons := map[string]int{}
+	var lines []string
+	for seed := first; seed < first+int64(n); seed++ {
+		sys := trial.System(seed, o)
+		out := try(seed, sys, Options{})
+		if out.panicked != "" {
+			t.Errorf("seed %d: panic: %s", seed, out.panicked)
+		}
+		if !out.unmixed {
+			single++
+			if len(out.problems) == 0 {
+				complete++
+			}
+		}
+		if len(out.problems) == 0 {
+			continue
+		}
+		key := reason(out.problems[0], sys)
+		if out.unmixed {
+			key = "(two liquids)"
+		}
+		reasons[key]++
+		lines = append(lines, fmt.Sprintf("seed %d, MaxSolids %d, %d solids, unmixed %v:\n    %s", seed, o.MaxSolids, out.solids, out.unmixed, strings.Join(out.problems, "\n    ")))
+	}
+	var keys []string
+	for k := range reasons {
+		keys = append(keys, k)
+	}
+	sort.Slice(keys, func(i, j int) bool {
+		return reasons[keys[i]] > reasons[keys[j]] || reasons[keys[i]] == reasons[keys[j]] && keys[i] < keys[j]
+	})
+	summary := fmt.Sprintf("%d systems of seeds %d to %d: %d with one liquid, %d of them complete (%.2f %%)",
+		n, first, first+int64(n)-1, single, complete, 100*float64(complete)/float64(single))
+	for _, k := range keys {
+		summary += fmt.Sprintf("\n%5d  %s", reasons[k], k)
+	}
+	t.Log(summary)
+	writeReport(t, summary, lines)
+	return complete, single
+}
+
+func writeReport(t *testing.T, summary string, lines []string) {
+	if *report == "" {
+		return
+	}
+	f, err := os.OpenFile(*report, os.O_CREATE|os.O_APPEND|os.O_WRONLY, 0o644)
+	if err != nil {
+		t.Fatal(err)
+	}
+	fmt.Fprintf(f, "%s\n\n%s\n\n", summary, strings.Join(lines, "\n"))
+	if err := f.Close(); err != nil {
+		t.Fatal(err)
+	}
+}
+
+// tortureShare is the share of random systems with one liquid that must come
+// out complete.
+const tortureShare = 0.97
+
+func TestTorture(t *testing.T) {
+	complete, single := torture(t, 1, 200, trial.Options{})
+	if single < 150 {
+		t.Errorf("only %d of 200 systems keep one liquid: the generator is too harsh", single)
+	}
+	if float64(complete) < tortureShare*float64(single) {
+		t.Errorf("%d of %d projections complete, want %.0f %%", complete, single, 100*tortureShare)
+	}
+}
+
+func TestTortureLong(t *testing.T) {
+	if !*long {
+		t.Skip("run with -long")
+	}
+	complete, single := torture(t, 1001, 2000, trial.Options{MaxSolids: 12})
+	if float64(complete) < tortureShare*float64(single) {
+		t.Errorf("%d of %d projections complete, want %.0f %%", complete, single, 100*tortureShare)
+	}
+}
