@@ -12,6 +12,8 @@ import (
 const (
 	nodeSame  = 1e-7  // two nodes closer than this, with one set of solids, are one
 	edgeStart = 2e-3  // how far inside the edge a curve's first point is solved
+	edgeHug   = 1e-6  // nearer than this an invariant point is solved for directly
+	edgeLeast = 1e-15 // the nearest that is tried
 	knownNear = 2e-4  // a point this close to a curve of its solids lies on it
 	portEmpty = -1000 // no phase
 )
@@ -72,20 +74,21 @@ func (e *engine) followFromEdge(ed *edge, node int, at float64) {
 	if !e.take(node, p) {
 		return
 	}
-	i, j := (ed.k+1)%3, (ed.k+2)%3
-	for in := edgeStart; in > 1e-9; in /= 10 {
-		x0, dx := edgeLine(i, j)
-		for c := range x0 {
-			x0[c] *= 1 - in
-			dx[c] *= 1 - in
-		}
-		x0[ed.k] = in
+	third := -1
+	for in := edgeStart; in > edgeLeast; in /= 10 {
 		a := constraint{phase: sa.Phase, y: sa.Y}
 		b := constraint{phase: sb.Phase, y: sb.Y}
 		var s site
-		pos, ok := e.solveOnLine(&s, &a, &b, x0, dx, at, nd.T)
-		if !ok || math.Abs(pos-at) > 0.05+20*in || pos < 0 || pos > 1 || e.worst(&s, sa.Phase, sb.Phase) > zeroDrive {
+		pos, ok := e.solveInside(&s, &a, &b, ed.k, in, at, nd.T)
+		if !ok || math.Abs(pos-at) > 0.05+20*in || pos < 0 || pos > 1 {
 			continue
+		}
+		if w, c := e.worst(&s, sa.Phase, sb.Phase); w > zeroDrive {
+			third = c
+			continue
+		}
+		if third >= 0 && in < edgeHug && e.hugging(node, &s, a, b, third) {
+			return
 		}
 		inward := vec{dxdp[ed.k][0], dxdp[ed.k][1], 0}
 		_, ga := a.eval(e, &s)
@@ -94,17 +97,59 @@ func (e *engine) followFromEdge(ed *edge, node int, at float64) {
 		if !ok {
 			continue
 		}
-		px, py := nd.Liquid.XY()
-		z0 := vec{px, py, nd.T / e.tRef}
-		t0 := dir
-		if d := s.z.minus(z0); d.norm() > 1e-12 {
-			t0 = d.scaled(1 / d.norm())
-		}
-		head := tracePoint{x: nd.Liquid, z: z0, t: t0, a: sa, b: sb}
+		head := e.edgePoint(nd, s.z, dir)
+		head.a, head.b = sa, sb
 		e.finishCurve(node, []tracePoint{head}, newTracer(e, a, b).run(s.place(), dir, false))
 		return
 	}
 	e.problem(fmt.Sprintf("the curve of %s and %s could not be followed from the edge at %s", e.symbol(sa.Phase), e.symbol(sb.Phase), e.place(nd.Liquid)))
+}
+
+// solveInside solves two constraints with the fraction of component k held at in,
+// a little inside the edge, from position at along it. It returns the position.
+func (e *engine) solveInside(s *site, a, b *constraint, k int, in, at, T float64) (float64, bool) {
+	x0, dx := edgeLine((k+1)%3, (k+2)%3)
+	for c := range x0 {
+		x0[c] *= 1 - in
+		dx[c] *= 1 - in
+	}
+	x0[k] = in
+	return e.solveOnLine(s, a, b, x0, dx, at, T)
+}
+
+// edgePoint is the point of a node on an edge from which a curve goes to z.
+func (e *engine) edgePoint(nd *Node, z, dir vec) tracePoint {
+	px, py := nd.Liquid.XY()
+	z0 := vec{px, py, nd.T / e.tRef}
+	if d := z.minus(z0); d.norm() > 1e-12 {
+		dir = d.scaled(1 / d.norm())
+	}
+	return tracePoint{x: nd.Liquid, z: z0, t: dir}
+}
+
+// hugging files the curve from an edge node to an invariant point so close to the
+// edge that continuation cannot take steps between them: the field of third
+// comes within a hair of the edge.
+func (e *engine) hugging(node int, s *site, a, b constraint, third int) bool {
+	c := constraint{phase: third, y: e.sys.Solids[third].Drive(&s.pot.Mu, s.T).Y}
+	if !e.solvePoint(s, &a, &b, &c) {
+		return false
+	}
+	end := tracePoint{x: s.x, z: s.z, a: a.state(), b: b.state()}
+	to, ok := e.invariant(end, third)
+	if !ok {
+		return false
+	}
+	nd := &e.nodes[node]
+	head := e.edgePoint(nd, s.z, vec{})
+	head.a, head.b = nd.Solids[0], nd.Solids[1]
+	if head.a.Phase != end.a.Phase {
+		head.a, head.b = head.b, head.a
+	}
+	end.t = head.t
+	e.take(to, makePort(a.phase, b.phase))
+	e.addCurve(rawCurve{a: a.phase, b: b.phase, from: node, to: to, points: []tracePoint{head, end}})
+	return true
 }
 
 // followPending follows curves from invariant points until none is left.

@@ -202,7 +202,7 @@ func (e *engine) splitEdge(ed *edge, x0, dx ternary.Composition, a, b edgeSample
 	if depth > 1 { // close enough for Newton's method
 		var s site
 		if at, ok := e.solveOnLine(&s, &ca, &cb, x0, dx, mid, T); ok && at >= a.at-1e-12 && at <= b.at+1e-12 {
-			if e.worst(&s, a.primary, b.primary) <= zeroDrive {
+			if w, _ := e.worst(&s, a.primary, b.primary); w <= zeroDrive {
 				e.addEdgeNode(ed, at, &s, &ca, &cb)
 				return
 			}
@@ -214,15 +214,19 @@ func (e *engine) splitEdge(ed *edge, x0, dx ternary.Composition, a, b edgeSample
 	e.splitEdge(ed, x0, dx, m, b, depth+1)
 }
 
-// worst is the largest driving force, in R·tRef, of the solids other than a and b.
-func (e *engine) worst(s *site, a, b int) float64 {
-	w := math.Inf(-1)
+// worst is the largest driving force, in R·tRef, of the solids other than a and
+// b, and the solid whose it is.
+func (e *engine) worst(s *site, a, b int) (w float64, who int) {
+	w, who = math.Inf(-1), -1
 	for i, p := range e.sys.Solids {
-		if i != a && i != b {
-			w = math.Max(w, p.Drive(&s.pot.Mu, s.T).D/e.rtRef)
+		if i == a || i == b {
+			continue
+		}
+		if d := p.Drive(&s.pot.Mu, s.T).D / e.rtRef; d > w {
+			w, who = d, i
 		}
 	}
-	return w
+	return w, who
 }
 
 func (e *engine) addEdgeNode(ed *edge, at float64, s *site, a, b *constraint) {

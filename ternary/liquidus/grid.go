@@ -200,12 +200,14 @@ func (e *engine) explainLink(x, y ternary.Composition, a, b surface, depth int) 
 		ca := constraint{phase: a.primary, y: a.all[a.primary].Y}
 		cb := constraint{phase: b.primary, y: b.all[b.primary].Y}
 		at, ok := e.solveOnLine(&s, &ca, &cb, x, dx, 0.5, math.Min(a.T, b.T))
-		if ok && at >= -1e-9 && at <= 1+1e-9 && e.worst(&s, a.primary, b.primary) <= zeroDrive {
-			if !e.known(a.primary, b.primary, s.z) {
-				e.followSeed(&s, ca, cb)
-				e.followPending()
+		if ok && at >= -1e-9 && at <= 1+1e-9 {
+			if w, _ := e.worst(&s, a.primary, b.primary); w <= zeroDrive {
+				if !e.known(a.primary, b.primary, s.z) {
+					e.followSeed(&s, ca, cb)
+					e.followPending()
+				}
+				return
 			}
-			return
 		}
 	}
 	mid := x.Lerp(y, 0.5)

@@ -182,18 +182,14 @@ func (e *engine) isothermFrom(c *crossingPoint, side int, T float64, cs []crossi
 
 // isothermInside solves the isotherm's first point inside the edge.
 func (e *engine) isothermInside(c *crossingPoint, a *constraint, t constraint) (at place, dir vec, ok bool) {
-	i, j := (c.edge+1)%3, (c.edge+2)%3
-	for in := edgeStart; in > 1e-9; in /= 10 {
-		x0, dx := edgeLine(i, j)
-		for k := range x0 {
-			x0[k] *= 1 - in
-			dx[k] *= 1 - in
-		}
-		x0[c.edge] = in
+	for in := edgeStart; in > edgeLeast; in /= 10 {
 		ca, ct := *a, t
 		var s site
-		pos, solved := e.solveOnLine(&s, &ca, &ct, x0, dx, c.at, t.t)
-		if !solved || math.Abs(pos-c.at) > 0.05+20*in || e.worst(&s, a.phase, a.phase) > zeroDrive {
+		pos, solved := e.solveInside(&s, &ca, &ct, c.edge, in, c.at, t.t)
+		if !solved || math.Abs(pos-c.at) > 0.05+20*in {
+			continue
+		}
+		if w, _ := e.worst(&s, a.phase, a.phase); w > zeroDrive {
 			continue
 		}
 		_, ga := ca.eval(e, &s)

@@ -1,4 +1,4 @@
-package liquidus
+package liquidus_test
 
 import (
 	"flag"
@@ -11,6 +11,7 @@ import (
 
 	"thalweg/ternary/gibbs"
 	"thalweg/ternary/internal/trial"
+	"thalweg/ternary/liquidus"
 )
 
 var (
@@ -25,11 +26,11 @@ type outcome struct {
 	unmixed  bool // the liquid separates into two: outside the scope of a complete projection
 	panicked string
 	problems []string
-	p        *Projection
+	p        *liquidus.Projection
 }
 
 // try computes one system and never lets a panic out.
-func try(seed int64, sys *gibbs.System, o Options) (out outcome) {
+func try(seed int64, sys *gibbs.System, o liquidus.Options) (out outcome) {
 	out.seed, out.solids = seed, len(sys.Solids)
 	defer func() {
 		if r := recover(); r != nil {
@@ -37,7 +38,7 @@ func try(seed int64, sys *gibbs.System, o Options) (out outcome) {
 			out.problems = append(out.problems, "panic: "+out.panicked)
 		}
 	}()
-	p, err := Compute(sys, o)
+	p, err := liquidus.Compute(sys, o)
 	if err != nil {
 		out.problems = []string{err.Error()}
 		return out
@@ -75,7 +76,7 @@ func torture(t *testing.T, first int64, n int, o trial.Options) (complete, singl
 	var lines []string
 	for seed := first; seed < first+int64(n); seed++ {
 		sys := trial.System(seed, o)
-		out := try(seed, sys, Options{})
+		out := try(seed, sys, liquidus.Options{})
 		if out.panicked != "" {
 			t.Errorf("seed %d: panic: %s", seed, out.panicked)
 		}

@@ -1,0 +1,356 @@
+package render
+
+import (
+	"fmt"
+	"math"
+	"sort"
+	"strings"
+
+	"thalweg/ternary"
+	"thalweg/ternary/descent"
+	"thalweg/ternary/liquidus"
+)
+
+// Columns of the key, mm from its left side.
+const (
+	keyIndent = 6.0  // where words start, after numbers and symbols
+	keyT      = 14.0 // right end of temperatures
+	keyFirst  = 9.2  // least width of a column of percentages
+	keyGap    = 3.0  // between columns of different things
+	keyUnit   = 1.4  // between the last column's head and the unit
+	keyBlock  = 1.6  // further space above a new block
+)
+
+// keyMaker builds the key: what the numbers and symbols in the triangle stand
+// for.
+type keyMaker struct {
+	style  Style
+	tri    triangle // for its components and basis
+	pr     *liquidus.Projection
+	fig    Figure
+	placed []placedSample
+	width  float64
+	table  table
+}
+
+// newKey sets the key for a column of the given width, mm.
+func newKey(f Figure, st Style, placed []placedSample, width float64) table {
+	k := keyMaker{style: st, pr: f.Projection, fig: f, placed: placed, width: width,
+		tri:   triangle{components: f.Projection.System.Components, basis: f.Basis},
+		table: table{leading: st.leading(), size: st.Base, ruled: &Stroke{Width: st.Rule * mmPerPoint, Colour: st.Muted}}}
+	k.nodes()
+	k.samples()
+	k.isotherms()
+	k.diamonds()
+	k.solids()
+	return k.table
+}
+
+func (k *keyMaker) text(s string, x float64, font Font) entry {
+	return entry{runs: PlainRuns(s, k.style.Base, font), x: x, colour: k.style.Text}
+}
+
+func (k *keyMaker) number(s string, x float64) entry {
+	e := k.text(s, x, Regular)
+	e.right = true
+	return e
+}
+
+// keyColumns are the right ends of the three columns of percentages.
+func keyColumns(st Style, tri triangle) [3]float64 {
+	var out [3]float64
+	x := keyT
+	for i, c := range tri.components {
+		x += max(keyFirst, TextWidth(FormulaRuns(c.Symbol, st.Base, Bold))+2)
+		out[i] = x
+	}
+	return out
+}
+
+// leastKeyWidth is the width that the key's columns need.
+func leastKeyWidth(st Style, tri triangle) float64 {
+	return keyColumns(st, tri)[2] + keyUnit + TextWidth(PlainRuns(tri.basis.Unit(), st.Base, Regular)) + 0.5
+}
+
+// nodes lists invariant points, those on edges after those inside.
+func (k *keyMaker) nodes() {
+	nodes := shownNodes(k.pr)
+	if len(nodes) == 0 {
+		return
+	}
+	sort.SliceStable(nodes, func(i, j int) bool { return rankNode(nodes[i]) < rankNode(nodes[j]) })
+	cols := keyColumns(k.style, k.tri)
+	head := tableLine{rule: true, entries: []entry{k.number("T, °C", keyT)}}
+	for i, c := range k.tri.components {
+		head.entries = append(head.entries, entry{runs: FormulaRuns(c.Symbol, k.style.Base, Regular), x: cols[i], right: true, colour: k.style.Text})
+	}
+	head.entries = append(head.entries, k.text(k.tri.basis.Unit(), cols[2]+keyUnit, Regular))
+	for i := range head.entries {
+		head.entries[i].colour = k.style.Muted
+	}
+	k.table.add(head)
+	grouped := len(nodes) > manyNodes
+	beside := k.fitsBeside(nodes, cols[2]+keyGap, !grouped)
+	last := ""
+	for i, n := range nodes {
+		gap := 0.0
+		switch {
+		case i == 0:
+			gap = 0.9
+		case !beside || !grouped && rankNode(n)/10 != rankNode(nodes[i-1])/10:
+			gap = 0.5
+		}
+		if kind := k.kind(n); grouped && kind != last {
+			e := k.text(kind, keyIndent, Italic)
+			e.colour = k.style.Muted
+			k.table.add(tableLine{gap: gap + 0.4, entries: []entry{e}})
+			last, gap = kind, 0
+		}
+		k.node(n, cols, k.describe(n, !grouped), beside, gap)
+	}
+}
+
+// manyNodes is the number of points from which their kinds stand as headings
+// instead of in every line.
+const manyNodes = 8
+
+// kind is the heading for points like n.
+func (k *keyMaker) kind(n liquidus.Node) string {
+	if n.Edge >= 0 {
+		return string(n.Kind) + " on an edge"
+	}
+	return string(n.Kind)
+}
+
+// rankNode sorts points: those inside, those on edges, extrema; of each, by
+// kind.
+func rankNode(n liquidus.Node) int {
+	kinds := []liquidus.Kind{liquidus.Eutectic, liquidus.ReactionPoint, liquidus.Peritectic, liquidus.Transition,
+		liquidus.Maximum, liquidus.Minimum, liquidus.Critical}
+	rank := len(kinds)
+	for i, k := range kinds {
+		if k == n.Kind {
+			rank = i
+		}
+	}
+	switch {
+	case isRing(n):
+		return rank
+	case n.Edge >= 0:
+		return 10 + rank
+	}
+	return 20 + rank
+}
+
+// describe is the reaction at a point, after its kind if that is asked for.
+func (k *keyMaker) describe(n liquidus.Node, kind bool) [][]Run {
+	var words [][]Run
+	if kind && n.Kind != "" {
+		words = k.words(string(n.Kind) + ",")
+	}
+	for _, w := range strings.Fields(reaction(k.pr.System, n)) {
+		words = append(words, FormulaRuns(w, k.style.Base, Regular))
+	}
+	return words
+}
+
+// fitsBeside reports whether every description fits between x and the right
+// side.
+func (k *keyMaker) fitsBeside(nodes []liquidus.Node, x float64, kind bool) bool {
+	for _, n := range nodes {
+		if lines := wrap(k.describe(n, kind), k.width-x); len(lines) > 1 || len(lines) == 1 && TextWidth(lines[0]) > k.width-x {
+			return false
+		}
+	}
+	return true
+}
+
+func (k *keyMaker) node(n liquidus.Node, cols [3]float64, words [][]Run, beside bool, gap float64) {
+	line := tableLine{gap: gap, entries: []entry{
+		k.text(n.ID, 0, Bold),
+		k.number(fmt.Sprintf("%.0f", celsius(n.T)), keyT),
+	}}
+	for i, s := range k.tri.percents(n.Liquid) {
+		line.entries = append(line.entries, k.number(s, cols[i]))
+	}
+	if beside {
+		for _, runs := range wrap(words, k.width) {
+			line.entries = append(line.entries, entry{runs: runs, x: cols[2] + keyGap, colour: k.style.Text})
+		}
+		k.table.add(line)
+		return
+	}
+	k.table.add(line)
+	k.paragraph(words, keyIndent, 0)
+}
+
+// paragraph wraps words between x and the right side.
+func (k *keyMaker) paragraph(words [][]Run, x, gap float64) {
+	for i, runs := range wrap(words, k.width-x) {
+		l := tableLine{entries: []entry{{runs: runs, x: x, colour: k.style.Text}}}
+		if i == 0 {
+			l.gap = gap
+		}
+		k.table.add(l)
+	}
+}
+
+func (k *keyMaker) words(s string) [][]Run {
+	var out [][]Run
+	for _, w := range strings.Fields(s) {
+		out = append(out, PlainRuns(w, k.style.Base, Regular))
+	}
+	return out
+}
+
+// samples lists the samples that have a path, each with what happened along it;
+// the others have their names beside them.
+func (k *keyMaker) samples() {
+	for _, s := range k.placed {
+		if s.trail < 0 {
+			continue
+		}
+		title := s.Name
+		if title == "" {
+			title = "bulk"
+		}
+		p := k.fig.Paths[s.trail]
+		runs := PlainRuns(title, k.style.Base, Bold)
+		runs = append(runs, PlainRuns(", "+string(p.Mode)+" crystallisation", k.style.Base, Regular)...)
+		k.table.add(tableLine{gap: keyBlock,
+			entries: []entry{{runs: runs, x: keyIndent, colour: k.style.Text}},
+			symbol: func(l *Layer, at Point) {
+				q := Point{at.X + sampleRadius*1.3, at.Y + CapHeight(k.style.Base)/2}
+				l.Path(PathItem{Path: sampleShape(s.shape, q, sampleRadius), Fill: &s.colour, Role: "key symbol"})
+			}})
+		k.events(p)
+	}
+	for i, p := range k.fig.Paths {
+		if p != nil {
+			k.pathLines(i)
+			break
+		}
+	}
+}
+
+// events lists T, event and the melt left for each event of a path.
+func (k *keyMaker) events(p *descent.Path) {
+	right := min(k.width, 60)
+	for _, s := range p.Steps {
+		if s.Event == "" {
+			continue
+		}
+		label := fmt.Sprintf("%.0f %% melt", math.Abs(100*melt(s, k.fig.Basis)))
+		e := k.text(s.Event, keyT+keyGap-1, Regular)
+		room := right - e.x - TextWidth(PlainRuns(label, k.style.Base, Regular)) - 2
+		lines := wrap(k.words(s.Event), room)
+		for i, runs := range lines {
+			e.runs = runs
+			l := tableLine{entries: []entry{e}}
+			if i == 0 {
+				l.entries = append(l.entries, k.number(fmt.Sprintf("%.0f", celsius(s.T)), keyT), k.number(label, right))
+			}
+			k.table.add(l)
+		}
+	}
+}
+
+// pathLines explains the lines of paths, with samples drawn in the colour of
+// path i.
+func (k *keyMaker) pathLines(i int) {
+	st := k.style
+	c := st.pathColour(i)
+	const length = 8.0
+	at := length + 1.8
+	line := func(o Point) Path {
+		y := o.Y + XHeight(st.Base)/2
+		return Polyline([]Point{{o.X + 0.4, y}, {o.X + length, y}}, false)
+	}
+	measure := "mass"
+	if k.fig.Basis == ternary.Mole {
+		measure = "moles"
+	}
+	put := func(words string, gap float64, sym func(*Layer, Point)) {
+		first := len(k.table.lines)
+		k.paragraph(k.words(words), at, gap)
+		k.table.lines[first].symbol = sym
+	}
+	put("liquid; a tick for each tenth crystallised, by "+measure, keyBlock, func(l *Layer, o Point) {
+		st.drawPath(l, line(o), i, "key symbol")
+		y := o.Y + XHeight(st.Base)/2
+		for _, x := range []float64{2, 4, 6} {
+			l.Path(PathItem{Path: Polyline([]Point{{o.X + x, y - crossTick}, {o.X + x, y + crossTick}}, false), Stroke: st.stroke(st.Mark, c), Role: "key symbol"})
+		}
+	})
+	put("bulk of the solids", 0.2, func(l *Layer, o Point) {
+		l.Path(PathItem{Path: line(o), Stroke: st.dashed(st.SolidPath, c, st.solidDash(i)), Role: "key symbol"})
+	})
+	put("last liquid; final solid", 0.2, func(l *Layer, o Point) {
+		y := o.Y + XHeight(st.Base)/2
+		q := Point{o.X + 2, y}
+		l.Path(PathItem{Path: circle(q, 1.35), Stroke: st.stroke(st.Mark+0.2, c), Role: "key symbol"})
+		l.Path(PathItem{Path: circle(q, 0.45), Fill: &c, Role: "key symbol"})
+		l.Path(PathItem{Path: square(Point{o.X + 6, y}, 1.3), Stroke: st.stroke(st.Mark, c), Role: "key symbol"})
+	})
+}
+
+// isotherms states their interval.
+func (k *keyMaker) isotherms() {
+	step := isothermStep(k.pr.Isotherms)
+	if step == 0 {
+		return
+	}
+	k.paragraph(k.words(fmt.Sprintf("isotherms every %g °C", step)), 0, keyBlock)
+}
+
+// diamonds explains the symbol for the composition of a solid.
+func (k *keyMaker) diamonds() {
+	if len(compoundPlaces(k.pr.System)) == 0 {
+		return
+	}
+	st := k.style
+	k.table.add(tableLine{entries: []entry{k.text("composition of a solid", 3, Regular)}, symbol: func(l *Layer, o Point) {
+		w := white
+		q := Point{o.X + diamondRadius + 0.2, o.Y + XHeight(st.Base)/2}
+		l.Path(PathItem{Path: diamond(q, diamondRadius), Fill: &w, Stroke: st.stroke(st.Mark, st.Line), Role: "key symbol"})
+	}})
+}
+
+// solids spells out the symbols of the solids that appear, and what is to be
+// remarked about them.
+func (k *keyMaker) solids() {
+	sys := k.pr.System
+	seen := make([]bool, len(sys.Solids))
+	for _, f := range k.pr.Fields {
+		seen[f.Solid] = true
+	}
+	var words [][]Run
+	var remarks []string
+	for i, s := range sys.Solids {
+		if !seen[i] {
+			continue
+		}
+		if s.Name != "" && s.Name != s.Symbol {
+			w := FormulaRuns(s.Symbol, k.style.Base, Italic)
+			name := strings.Fields(s.Name)
+			words = append(words, w)
+			for j, n := range name {
+				if j == len(name)-1 {
+					n += ";"
+				}
+				words = append(words, FormulaRuns(n, k.style.Base, Regular))
+			}
+		}
+		if s.Remark != "" {
+			remarks = append(remarks, s.Symbol+": "+s.Remark)
+		}
+	}
+	if n := len(words); n > 0 {
+		last := words[n-1]
+		last[len(last)-1].Text = strings.TrimSuffix(last[len(last)-1].Text, ";")
+		k.paragraph(words, 0, keyBlock/2)
+	}
+	for _, r := range remarks {
+		k.paragraph(k.words(r), 0, keyBlock/2)
+	}
+}

@@ -1,0 +1,80 @@
+package render
+
+import (
+	"math"
+	"testing"
+)
+
+// contrast is the ratio of WCAG 2.1 (relative luminance, W3C Recommendation of
+// 5 June 2018).
+func contrast(a, b Colour) float64 {
+	lum := func(c Colour) float64 {
+		f := func(v uint8) float64 {
+			s := float64(v) / 255
+			if s <= 0.03928 {
+				return s / 12.92
+			}
+			return math.Pow((s+0.055)/1.055, 2.4)
+		}
+		return 0.2126*f(c.R) + 0.7152*f(c.G) + 0.0722*f(c.B)
+	}
+	x, y := lum(a), lum(b)
+	if x < y {
+		x, y = y, x
+	}
+	return (x + 0.05) / (y + 0.05)
+}
+
+func TestContrastFormula(t *testing.T) {
+	// black on white is 21:1 by definition; #767676 on white is the well-known
+	// 4.54:1 limit grey.
+	if c := contrast(white, Hex("000000")); math.Abs(c-21) > 1e-9 {
+		t.Errorf("black on white: %g", c)
+	}
+	if c := contrast(white, Hex("767676")); math.Abs(c-4.54) > 0.005 {
+		t.Errorf("#767676 on white: %g, want 4.54", c)
+	}
+}
+
+func TestStylesKeepContrast(t *testing.T) {
+	for _, st := range []Style{ColourStyle(), InkStyle()} {
+		grounds := append([]Colour{white}, st.Tints...)
+		for _, g := range grounds {
+			for name, c := range map[string]Colour{"text": st.Text, "muted text": st.Muted} {
+				if r := contrast(c, g); r < 4.5 {
+					t.Errorf("%s: %s %v on %v has %.2f:1, less than 4.5", st.Name, name, c, g, r)
+				}
+			}
+			lines := []Colour{st.Line, st.IsothermHot, st.IsothermCold}
+			for _, c := range append(lines, st.PathColours...) {
+				if r := contrast(c, g); r < 3 {
+					t.Errorf("%s: line %v on %v has %.2f:1, less than 3", st.Name, c, g, r)
+				}
+			}
+		}
+	}
+}
+
+func TestStyleNamed(t *testing.T) {
+	for name, want := range map[string]string{"": "colour", "colour": "colour", "ink": "ink"} {
+		if s, err := StyleNamed(name); err != nil || s.Name != want {
+			t.Errorf("%q gives %q, %v", name, s.Name, err)
+		}
+	}
+	if _, err := StyleNamed("neon"); err == nil {
+		t.Error("an unknown style is accepted")
+	}
+}
+
+func TestNeighboursDifferInTint(t *testing.T) {
+	eachFigure(t, func(t *testing.T, d *drawing) {
+		tint := d.tints()
+		for _, c := range d.pr.Curves {
+			a, ok := tint(c.Solids[0])
+			b, _ := tint(c.Solids[1])
+			if ok && c.Solids[0] != c.Solids[1] && a == b {
+				t.Errorf("fields %d and %d share a boundary and a tint", c.Solids[0], c.Solids[1])
+			}
+		}
+	})
+}
