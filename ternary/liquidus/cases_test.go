@@ -55,7 +55,7 @@ func TestPolymorphs(t *testing.T) {
 	// and it leaves A's own boundary as it would be without the low form: x_A of
 	// the ideal law at the transition, on both edges
 	h, tm := 30000.0, 1500.0
-	want := math.Exp(-h / ternary.R * (1/trial.PolymorphT - 1/tm))
+	want := math.Exp(-h / ternary.R * (1.0/trial.PolymorphT - 1/tm))
 	for _, n := range nodesOf(p, liquidus.Transition) {
 		if math.Abs(n.Liquid[0]-want) > 1e-9 {
 			t.Errorf("%s at %v, the ideal law says x_A = %.9f", n.ID, n.Liquid, want)
@@ -187,7 +187,7 @@ func TestOutside(t *testing.T) {
 		t.Fatalf("fields of K: %+v", k)
 	}
 	surf := surface(t, sys)
-	for _, x := range []ternary.Composition{{0.78, 0.17, 0.05}, {0.5, 0.15, 0.35}, {0.4, 0.05, 0.55}, {0.3, 0.01, 0.69}} {
+	for _, x := range []ternary.Composition{{0.78, 0.17, 0.05}, {0.5, 0.15, 0.35}, {0.4, 0.05, 0.55}, {0.3, 0.005, 0.695}} {
 		want := 27700 / (30 - ternary.R*math.Log(x[0]/x[1]))
 		if r := math.Log(x[0] / x[1]); ternary.R*r >= 30 {
 			want = math.Inf(1)

@@ -71,7 +71,9 @@ func (e *engine) scanEdge(k int) *edge {
 func (e *engine) findStops(ed *edge, x0, dx ternary.Composition) {
 	for i := range ed.samples {
 		s := &ed.samples[i]
-		ed.stops = append(ed.stops, stop{s.at, s.T, s.primary, s.primary})
+		if !ed.nodeAt(s.at) {
+			ed.stops = append(ed.stops, stop{s.at, s.T, s.primary, s.primary})
+		}
 	}
 	add := func(at float64) {
 		if s := e.surface(onLine(x0, dx, at), nil); s.primary >= 0 {
@@ -103,6 +105,17 @@ func (e *engine) findStops(ed *edge, x0, dx ternary.Composition) {
 		ed.stops = append(ed.stops, stop{ed.at[n], nd.T, left, right})
 	}
 	sort.SliceStable(ed.stops, func(i, j int) bool { return ed.stops[i].at < ed.stops[j].at })
+}
+
+// nodeAt reports whether a node stands at a position: a sample there would have
+// one of two primary phases by rounding alone.
+func (ed *edge) nodeAt(at float64) bool {
+	for _, a := range ed.at {
+		if math.Abs(a-at) < 1e-9 {
+			return true
+		}
+	}
+	return false
 }
 
 // edgeExtremum finds an extremum of T_φ along an edge by golden section.

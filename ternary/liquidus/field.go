@@ -63,7 +63,7 @@ func (e *engine) placeHoles(p *Projection, g *graph, cycles []cycle, faces []*cy
 		}
 		best, area := -1, math.Inf(1)
 		for f, face := range faces {
-			if face.area < area && face.area > -c.area && contains(face.points, c.points[0][0], c.points[0][1]) {
+			if face.area < area && face.area > -c.area*(1+1e-9) && contains(face.points, c.points[0][0], c.points[0][1]) {
 				best, area = f, face.area
 			}
 		}

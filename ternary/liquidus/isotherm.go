@@ -115,34 +115,42 @@ func (e *engine) edgeCrossings(ed *edge, T float64) []crossingPoint {
 		if a.after != b.before || (a.T > T) == (b.T > T) || a.after < 0 {
 			continue
 		}
-		lo, hi := a.at, b.at
-		flo := a.T - T
-		var sol saturated
-		for round := 0; round < 80 && hi-lo > 1e-15; round++ {
-			mid := (lo + hi) / 2
-			c := e.column(onLine(x0, dx, mid))
-			sol = e.saturation(a.after, &c, sol)
-			if (sol.T-T > 0) == (flo > 0) {
-				lo = mid
-			} else {
-				hi = mid
-			}
-			if round == 6 { // close enough for Newton's method
-				var s site
-				ca := constraint{phase: a.after, y: sol.Y}
-				ct := constraint{phase: isothermal, t: T}
-				if at, ok := e.solveOnLine(&s, &ca, &ct, x0, dx, (lo+hi)/2, T); ok && at >= lo && at <= hi {
-					lo, hi = at, at
-				}
-			}
-		}
-		at := (lo + hi) / 2
+		at, sol := e.edgeCrossing(a, b, x0, dx, T)
 		x := onLine(x0, dx, at)
 		px, py := x.XY()
 		out = append(out, crossingPoint{x: x, z: vec{px, py, T / e.tRef}, curve: -1, edge: ed.k, at: at,
 			solid: [2]int{a.after, a.after}, y: [2][3]float64{sol.Y, sol.Y}})
 	}
 	return out
+}
+
+// edgeCrossing finds where T_φ = T between two stops of an edge: by Newton's
+// method from the chord, by bisection where that leaves the interval.
+func (e *engine) edgeCrossing(a, b *stop, x0, dx ternary.Composition, T float64) (at float64, sol saturated) {
+	lo, hi := a.at, b.at
+	rising := b.T > a.T
+	for round := 0; round < 80 && hi-lo > 1e-15; round++ {
+		at = (lo + hi) / 2
+		if round == 0 && !math.IsInf(a.T, 0) && !math.IsInf(b.T, 0) {
+			at = lo + (hi-lo)*(T-a.T)/(b.T-a.T)
+		}
+		c := e.column(onLine(x0, dx, at))
+		sol = e.saturation(a.after, &c, saturated{T: T})
+		if round%8 == 0 {
+			var s site
+			ca := constraint{phase: a.after, y: sol.Y}
+			ct := constraint{phase: isothermal, t: T}
+			if root, ok := e.solveOnLine(&s, &ca, &ct, x0, dx, at, T); ok && root >= lo && root <= hi {
+				return root, saturated{T: T, Y: ca.y}
+			}
+		}
+		if (sol.T < T) == rising {
+			lo = at
+		} else {
+			hi = at
+		}
+	}
+	return at, sol
 }
 
 // isothermFrom follows the isotherm from a crossing into one of its fields.

@@ -150,3 +150,36 @@ func TestTortureLong(t *testing.T) {
 		t.Errorf("%d of %d projections complete, want %.0f %%", complete, single, 100*tortureShare)
 	}
 }
+
+// Isotherms of random systems are whole: none is lost.
+func TestTortureIsotherms(t *testing.T) {
+	n := 100
+	if *long {
+		n = 1000
+	}
+	lost, traced := 0, 0
+	var lines []string
+	for seed := int64(1); seed <= int64(n); seed++ {
+		sys := trial.System(seed, trial.Options{})
+		base := try(seed, sys, liquidus.Options{})
+		if len(base.problems) > 0 {
+			continue
+		}
+		ts := spread(base.p, 10)
+		out := try(seed, sys, liquidus.Options{Isotherms: ts})
+		traced += len(ts)
+		lost += len(out.problems)
+		for _, q := range out.problems {
+			lines = append(lines, fmt.Sprintf("seed %d (isotherms spread(p, 10)): %s", seed, q))
+		}
+		if out.panicked != "" {
+			t.Errorf("seed %d: panic: %s", seed, out.panicked)
+		}
+	}
+	summary := fmt.Sprintf("%d isotherms of %d systems: %d problems", traced, n, lost)
+	t.Log(summary)
+	writeReport(t, summary, lines)
+	if float64(lost) > 0.002*float64(traced) {
+		t.Errorf("%s:\n%s", summary, strings.Join(lines, "\n"))
+	}
+}
