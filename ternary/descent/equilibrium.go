@@ -1,7 +1,7 @@
 package descent
 
 import (
-	"fmt"
+	"errors"
 	"math"
 
 	"thalweg/ternary"
@@ -11,21 +11,27 @@ import (
 
 const (
 	coolFirst = 0.5  // K, first step of cooling
-	coolMax   = 12.0 // K, longest step
+	coolMax   = 15.0 // K, longest step
 	coolMin   = 1e-7 // K, shortest: below it the path is given up
-	meltAim   = 0.04 // aimed change of the melt fraction per step
+	meltAim   = 0.06 // aimed change of the melt fraction per step
+	shyStep   = 0.05 // K, step below which no phase is suspected to come and go within
 	// aboveTol is the driving force, in RT, at which an absent phase has come in.
 	aboveTol = 1e-11
+	// maxStages bounds the assemblages of a path.
+	maxStages = 400
 )
 
-// holding is the assemblage of the moment.
+// holding is the assemblage of the moment, with derivatives with respect to T.
+// q.Bulk is what is in contact.
 type holding struct {
-	q   *tangent.Equilibrium
-	dmu [3]float64
-	dn  []float64
+	q    *tangent.Equilibrium
+	dmu  [3]float64
+	dn   []float64 // of the closed system
+	lost drain     // what left since the holding that this one was reached from
+	rate float64   // factor by which the step could have been longer
 }
 
-// equilibrium follows the path with all solids kept in contact.
+// equilibrium follows the path with solids in contact.
 func (w *walk) equilibrium(primary gibbs.State) error {
 	T := w.path.LiquidT
 	var pot gibbs.Potentials
@@ -34,8 +40,16 @@ func (w *walk) equilibrium(primary gibbs.State) error {
 	liquid := tangent.Part{State: gibbs.State{Phase: gibbs.Liquid, Y: x, C: x}, Mole: 1}
 	q := &tangent.Equilibrium{T: T, Bulk: w.bulk, Mu: pot.Mu, Parts: []tangent.Part{liquid, {State: primary}}}
 	q, done := w.enter(q, 1)
-	for !done {
+	return w.stages(q, done)
+}
+
+// stages follows one assemblage after another.
+func (w *walk) stages(q *tangent.Equilibrium, done bool) error {
+	for n := 0; !done; n++ {
 		h, err := w.sense(q)
+		if err == nil && n > maxStages {
+			err = errors.New("the path does not come to an end")
+		}
 		if err != nil {
 			return w.lost(q.T, err)
 		}
@@ -50,34 +64,26 @@ func (w *walk) equilibrium(primary gibbs.State) error {
 // sense adds the derivatives with respect to T.
 func (w *walk) sense(q *tangent.Equilibrium) (holding, error) {
 	dmu, dn, err := tangent.Slopes(w.sys, q)
-	return holding{q, dmu, dn}, err
+	return holding{q: q, dmu: dmu, dn: dn, rate: math.Inf(1)}, err
 }
 
-func (w *walk) lost(T float64, err error) error {
-	return fmt.Errorf("the path was lost at %.3f °C: %w", T-ternary.ZeroCelsius, err)
-}
-
-// cool follows one assemblage down to its next event and through it. done
-// reports that the path has ended.
+// cool follows one assemblage to its next event and through it, down on
+// cooling, up on heating. done reports that the path has ended.
 func (w *walk) cool(h holding) (*tangent.Equilibrium, bool, error) {
 	step := coolFirst
 	for {
-		if h.q.T-step < w.low {
-			w.record(h.q, "")
-			w.end(h.q.T, "the melt is still liquid at the lower limit of temperature")
+		T, removal := w.target(h.q.T, step)
+		if T < w.low || T > w.high {
+			w.record(h.q, nil, "")
+			w.end(h.q.T, w.atLimit())
 			return nil, true, nil
 		}
 		if step < coolMin {
-			return nil, false, w.lost(h.q.T, fmt.Errorf("the event could not be located"))
+			return nil, false, w.lost(h.q.T, errors.New("the event could not be located"))
 		}
-		q, err := w.hold(h, h.q.T-step)
+		next, err := w.move(h, T)
 		if err != nil {
-			step /= 4
-			continue
-		}
-		next, err := w.sense(q)
-		if err != nil {
-			step /= 4
+			step /= 3
 			continue
 		}
 		if ev, found := w.firstEvent(h, next); found {
@@ -85,23 +91,59 @@ func (w *walk) cool(h holding) (*tangent.Equilibrium, bool, error) {
 				step /= 2
 				continue
 			}
-			w.rows(h, ev.q)
+			w.rows(h, w.until(h, ev))
+			w.book(ev.q, &ev.lost)
 			q, done := w.pass(ev)
 			return q, done, nil
 		}
-		if w.shy(h, next) && step > 0.05 {
+		if step > shyStep && w.shy(h, next) {
 			step /= 2
 			continue
 		}
-		w.rows(h, q)
-		change := math.Abs(w.meltMass(q) - w.meltMass(h.q))
-		step = math.Min(coolMax, step*math.Max(0.3, math.Min(2.5, meltAim/math.Max(change, 1e-4))))
+		w.rows(h, next)
+		w.book(next.q, &next.lost)
+		if removal {
+			return w.takeOut(next.q), false, nil
+		}
+		change := math.Abs(w.meltMass(next.q) - w.meltMass(h.q))
+		grow := math.Max(0.3, math.Min(2.5, meltAim/math.Max(change, 1e-4)))
+		step = math.Min(coolMax, step*math.Min(grow, next.rate))
+		next.lost = drain{}
 		h = next
 	}
 }
 
-// hold solves the assemblage of h at T from its derivatives.
-func (w *walk) hold(h holding, T float64) (*tangent.Equilibrium, error) {
+// target is the temperature one step away, or that of the next removal.
+func (w *walk) target(T, step float64) (float64, bool) {
+	next := T + w.dir*step
+	if len(w.removals) > 0 && next <= w.removals[0].T {
+		return math.Min(w.removals[0].T, T), true
+	}
+	return next, false
+}
+
+func (w *walk) atLimit() string {
+	if w.dir > 0 {
+		return "not all is molten at the upper limit of temperature"
+	}
+	return "the melt is still liquid at the lower limit of temperature"
+}
+
+// move carries an assemblage to T with its derivatives.
+func (w *walk) move(h holding, T float64) (holding, error) {
+	if w.keep < 1 {
+		return w.drainTo(h, T)
+	}
+	q, err := w.hold(&h, h.q.Bulk, T)
+	if err != nil {
+		return holding{}, err
+	}
+	return w.sense(q)
+}
+
+// hold solves the assemblage of h at T from its derivatives, with contents b in
+// contact.
+func (w *walk) hold(h *holding, b ternary.Composition, T float64) (*tangent.Equilibrium, error) {
 	mu := h.q.Mu
 	parts := append(make([]tangent.Part, 0, 4), h.q.Parts...)
 	for i := range mu {
@@ -110,10 +152,10 @@ func (w *walk) hold(h holding, T float64) (*tangent.Equilibrium, error) {
 	for i := range parts {
 		parts[i].Mole += h.dn[i] * (T - h.q.T)
 	}
-	return tangent.Hold(w.sys, w.bulk, T, mu, parts)
+	return tangent.Hold(w.sys, b, T, mu, parts)
 }
 
-// shy reports that an absent solid may have come and gone between two states:
+// shy reports that an absent phase may have come and gone between two states:
 // the cubic through its driving force at both comes close to zero.
 func (w *walk) shy(a, b holding) bool {
 	dT := b.q.T - a.q.T
@@ -125,17 +167,22 @@ func (w *walk) shy(a, b holding) bool {
 		if math.IsInf(da.D, -1) {
 			continue
 		}
-		ma, mb := (slope(&da, &a.dmu))*dT, (slope(&db, &b.dmu))*dT
-		if ma <= 0 || mb >= 0 {
-			continue
-		}
-		// the highest a cubic with these ends can be is below both tangents
-		u := (db.D - mb - da.D) / (ma - mb)
-		if top := da.D + ma*math.Max(0, math.Min(1, u)); top > 0 {
+		if hump(da.D, db.D, slope(&da, &a.dmu)*dT, slope(&db, &b.dmu)*dT) {
 			return true
 		}
 	}
 	return false
+}
+
+// hump reports that a function with values a, b and slopes ma, mb per step at
+// its ends may rise above zero between them: the highest that a cubic with these
+// ends can be is below both tangents.
+func hump(a, b, ma, mb float64) bool {
+	if ma <= 0 || mb >= 0 {
+		return false
+	}
+	u := (b - mb - a) / (ma - mb)
+	return a+ma*math.Max(0, math.Min(1, u)) > 0
 }
 
 func slope(d *gibbs.Drive, dmu *[3]float64) float64 {
@@ -155,59 +202,6 @@ func holds(parts []tangent.Part, phase int) bool {
 		}
 	}
 	return false
-}
-
-// rows records the states between h and q at even spacing of the melt's mass.
-func (w *walk) rows(h holding, q *tangent.Equilibrium) {
-	f0, f1 := w.meltMass(h.q), w.meltMass(q)
-	if f1 >= f0 {
-		return
-	}
-	n := float64(w.steps)
-	for k := math.Ceil(f0*n) - 1; k/n > f1; k-- {
-		f := k / n
-		if f >= f0 {
-			continue
-		}
-		if m := w.meltAt(h, q, f); m != nil {
-			w.record(m, "")
-		}
-	}
-}
-
-// meltAt finds the state with melt fraction f between two states by the
-// Illinois form of false position.
-func (w *walk) meltAt(h holding, q *tangent.Equilibrium, f float64) *tangent.Equilibrium {
-	a, b := h.q.T, q.T
-	fa, fb := w.meltMass(h.q)-f, w.meltMass(q)-f
-	var best *tangent.Equilibrium
-	side := 0
-	for round := 0; round < 60; round++ {
-		T := b - fb*(b-a)/(fb-fa)
-		m, err := w.hold(h, T)
-		if err != nil {
-			return nil
-		}
-		best = m
-		fm := w.meltMass(m) - f
-		if math.Abs(fm) < 1e-13 || math.Abs(b-a) < 1e-11*a {
-			break
-		}
-		if fm*fb > 0 {
-			b, fb = T, fm
-			if side == 1 {
-				fa /= 2
-			}
-			side = 1
-		} else {
-			a, fa = T, fm
-			if side == 2 {
-				fb /= 2
-			}
-			side = 2
-		}
-	}
-	return best
 }
 
 // meltMass is the mass fraction of liquid.

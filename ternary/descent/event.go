@@ -10,33 +10,33 @@ import (
 // event is a state at which the amount of one part vanishes.
 type event struct {
 	q       *tangent.Equilibrium
-	part    int  // index of the part in q.Parts
-	arrives bool // the phase comes in; else it goes out
+	part    int   // index of the part in q.Parts
+	arrives bool  // the phase comes in; else it goes out
+	lost    drain // what left since the start of the step
 }
 
-// firstEvent looks for the event between a and the colder state b. found says
+const (
+	// eventSlack is by how many kelvin an event may lie outside its step.
+	eventSlack = 1e-9
+	// eventShort and eventOver are what the state at an event may show of other
+	// events: an amount below zero, and a driving force in RT.
+	eventShort = 1e-10
+	eventOver  = 1e-9
+)
+
+// firstEvent looks for the event between a and the later state b. found says
 // that there is one; the event is nil when it could not be pinned down and the
 // step must be shorter.
 func (w *walk) firstEvent(a, b holding) (ev *event, found bool) {
 	try := func(parts []tangent.Part, zero int, arrives bool, share float64) {
 		found = true
-		T := a.q.T + share*(b.q.T-a.q.T)
-		mu := a.q.Mu
-		start := append([]tangent.Part(nil), parts...)
-		for i := range mu {
-			mu[i] += a.dmu[i] * (T - a.q.T)
-		}
-		for i := range start {
-			if i < len(a.dn) {
-				start[i].Mole += a.dn[i] * (T - a.q.T)
-			}
-		}
-		q, err := tangent.Event(w.sys, w.bulk, T, mu, start, zero)
-		if err != nil || q.T > a.q.T+1e-9 || q.T < b.q.T-1e-9 {
+		e, ok := w.pin(&a, &b, parts, zero, share)
+		if !ok || w.dir*(e.q.T-a.q.T) < -eventSlack || w.dir*(e.q.T-b.q.T) > eventSlack {
 			return
 		}
-		if ev == nil || q.T > ev.q.T {
-			ev = &event{q, zero, arrives}
+		e.arrives = arrives
+		if ev == nil || w.dir*(e.q.T-ev.q.T) < 0 {
+			ev = &e
 		}
 	}
 	for i, p := range b.q.Parts {
@@ -60,14 +60,67 @@ func (w *walk) firstEvent(a, b holding) (ev *event, found bool) {
 	}
 	// the state at the event must itself be stable
 	for i, p := range ev.q.Parts {
-		if i != ev.part && p.Mole < -1e-10 {
+		if i != ev.part && p.Mole < -eventShort {
 			return nil, true
 		}
 	}
-	if len(tangent.Above(w.sys, ev.q.Mu, ev.q.T, ev.q.Parts, 1e-9)) > 0 {
+	if len(tangent.Above(w.sys, ev.q.Mu, ev.q.T, ev.q.Parts, eventOver)) > 0 {
 		return nil, true
 	}
 	return ev, true
+}
+
+// pin solves for the event at which parts[zero] has no amount, a share of the
+// way from a to b.
+func (w *walk) pin(a, b *holding, parts []tangent.Part, zero int, share float64) (event, bool) {
+	if w.keep < 1 {
+		return w.pinDraining(a, b, parts, zero)
+	}
+	T := a.q.T + share*(b.q.T-a.q.T)
+	mu := a.q.Mu
+	start := append([]tangent.Part(nil), parts...)
+	for i := range mu {
+		mu[i] += a.dmu[i] * (T - a.q.T)
+	}
+	for i := range start {
+		if i < len(a.dn) {
+			start[i].Mole += a.dn[i] * (T - a.q.T)
+		}
+	}
+	q, err := tangent.Event(w.sys, a.q.Bulk, T, mu, start, zero)
+	return event{q: q, part: zero}, err == nil
+}
+
+// until is the state at an event as the end of a step that began at h: with the
+// parts of h alone.
+func (w *walk) until(h holding, ev *event) holding {
+	q := cloned(ev.q)
+	q.Parts = q.Parts[:len(h.q.Parts)]
+	next, err := w.sense(q)
+	if err != nil { // the secant will do for rows
+		dT := q.T - h.q.T
+		next = holding{q: q, dn: make([]float64, len(q.Parts))}
+		for i := range q.Parts {
+			next.dn[i] = (q.Parts[i].Mole - h.q.Parts[i].Mole) / dT
+		}
+		for i := range q.Mu {
+			next.dmu[i] = (q.Mu[i] - h.q.Mu[i]) / dT
+		}
+	}
+	return next
+}
+
+func cloned(q *tangent.Equilibrium) *tangent.Equilibrium {
+	c := *q
+	c.Parts = append(make([]tangent.Part, 0, len(q.Parts)+1), q.Parts...)
+	return &c
+}
+
+// without is the assemblage without one of its parts.
+func without(q *tangent.Equilibrium, part int) *tangent.Equilibrium {
+	c := cloned(q)
+	c.Parts = append(c.Parts[:part], c.Parts[part+1:]...)
+	return c
 }
 
 // pass records an event and returns the assemblage after it.
@@ -76,69 +129,96 @@ func (w *walk) pass(ev *event) (*tangent.Equilibrium, bool) {
 		return w.enter(ev.q, ev.part)
 	}
 	out := ev.q.Parts[ev.part]
-	w.record(ev.q, w.symbol(out.State.Phase)+" out")
-	if out.State.Phase == gibbs.Liquid && !w.moreLiquid(ev.q, ev.part) {
+	next := without(ev.q, ev.part)
+	w.record(ev.q, nil, w.symbol(out.State.Phase)+" out")
+	liquids := count(next.Parts, true)
+	switch {
+	case liquids == 0:
 		w.end(ev.q.T, "the last liquid is used up")
 		return nil, true
+	case w.dir > 0 && len(next.Parts) == liquids:
+		w.end(ev.q.T, "the last solid is molten")
+		return nil, true
 	}
-	next := *ev.q
-	next.Parts = append(append([]tangent.Part(nil), ev.q.Parts[:ev.part]...), ev.q.Parts[ev.part+1:]...)
-	return &next, false
+	return next, false
 }
 
-// moreLiquid reports that another part than i is liquid.
-func (w *walk) moreLiquid(q *tangent.Equilibrium, i int) bool {
-	for k, p := range q.Parts {
-		if k != i && p.State.Phase == gibbs.Liquid {
-			return true
+// count returns the number of parts that are liquid, or that are solid.
+func count(parts []tangent.Part, liquid bool) (n int) {
+	for _, p := range parts {
+		if (p.State.Phase == gibbs.Liquid) == liquid {
+			n++
 		}
 	}
-	return false
+	return n
 }
+
+// goneTol is the amount, in moles per mole of bulk, at which a phase counts as
+// used up by a reaction.
+const goneTol = 1e-12
 
 // enter lets the part with no amount into the assemblage. Where its composition
 // is a combination of the others' (four phases, or fewer on a join) T stands
 // still while a reaction runs.
 func (w *walk) enter(q *tangent.Equilibrium, part int) (*tangent.Equilibrium, bool) {
 	name := w.symbol(q.Parts[part].State.Phase) + " in"
-	v, dependent := w.nullReaction(q.Parts)
+	v, dependent := w.nullReaction(q.Parts, q.T)
 	if !dependent {
-		w.record(q, name)
+		w.record(q, nil, name)
 		return q, false
 	}
-	w.record(q, name+", "+w.describe(q.Parts, v)+" begins")
-	after := *q
-	after.Parts = append([]tangent.Part(nil), q.Parts...)
+	w.record(q, nil, name+", "+w.describe(q.Parts, v)+" begins")
+	after, gone := w.react(q, v)
+	w.record(after, nil, gone)
+	w.skipRows(w.meltMass(after))
+	switch liquids := count(after.Parts, true); {
+	case liquids == 0:
+		w.end(q.T, "the last liquid is used up in "+w.describe(q.Parts, v))
+		return nil, true
+	case w.dir > 0 && len(after.Parts) == liquids:
+		w.end(q.T, "the last solid is molten in "+w.describe(q.Parts, v))
+		return nil, true
+	}
+	return after, false
+}
+
+// react runs a reaction until one of its phases is used up. Of the solids that
+// it makes the share that is not kept in contact leaves.
+func (w *walk) react(q *tangent.Equilibrium, v []float64) (after *tangent.Equilibrium, gone string) {
 	run := math.Inf(1)
 	for i, p := range q.Parts {
 		if v[i] < 0 {
-			run = math.Min(run, p.Mole/-v[i])
+			run = math.Min(run, math.Max(0, p.Mole)/-v[i])
 		}
 	}
-	var gone string
+	after = cloned(q)
 	kept := after.Parts[:0]
-	liquid := false
 	for i, p := range q.Parts {
-		p.Mole += run * v[i]
-		if p.Mole <= goneTol {
+		made := run * v[i]
+		if made > 0 && p.State.Phase != gibbs.Liquid && w.keep < 1 {
+			out := (1 - w.keep) * made
+			w.gone.add(&p.State, out, w.enthalpy(&p.State, q.T))
+			for k, c := range p.State.C {
+				after.Bulk[k] -= out * c
+			}
+			made -= out
+		}
+		p.Mole += made
+		if v[i] < 0 && p.Mole <= goneTol {
 			if gone != "" {
 				gone += ", "
 			}
 			gone += w.symbol(p.State.Phase) + " out"
 			continue
 		}
-		liquid = liquid || p.State.Phase == gibbs.Liquid
 		kept = append(kept, p)
 	}
 	after.Parts = kept
-	w.record(&after, gone)
-	if !liquid {
-		w.end(q.T, "the last liquid is used up in "+w.describe(q.Parts, v))
-		return nil, true
-	}
-	return &after, false
+	return after, gone
 }
 
-// goneTol is the amount, in moles per mole of bulk, at which a phase counts as
-// used up by a reaction.
-const goneTol = 1e-12
+// enthalpy of one formula unit, J/mol.
+func (w *walk) enthalpy(s *gibbs.State, T float64) float64 {
+	_, _, h := w.phase(s.Phase).Gibbs(s.Y, T)
+	return h
+}

@@ -4,54 +4,64 @@ import (
 	"errors"
 	"fmt"
 	"math"
+	"slices"
 
 	"thalweg/ternary"
 	"thalweg/ternary/gibbs"
 	"thalweg/ternary/liquidus"
+	"thalweg/ternary/tangent"
 )
 
 // Options of Follow. The zero value is equilibrium crystallisation.
 type Options struct {
-	Mode Mode
+	Mode Mode // Equilibrium (also ""), or Fractional
 	// Steps is the number of rows, between events, per whole crystallisation of
 	// the bulk, at even spacing of the melt's mass; 0 means 50.
 	Steps int
+	// Retain is, in Fractional mode, the fraction of newly formed solids that
+	// stays in contact with the liquid and reacts with it, 0 to 1. At 0 every
+	// solid leaves as it forms; 1 is equilibrium.
+	Retain float64
+	// Removals take solids out at chosen temperatures. They need solids in
+	// contact: equilibrium, or Retain above 0.
+	Removals []Removal
 }
+
+// Removal takes solids that are in contact with the liquid out of the system.
+type Removal struct {
+	T        float64 // K, below the liquidus of the bulk
+	Phases   []int   // indices in System.Solids; nil means every solid in contact
+	Fraction float64 // of what there is of each, 0 to 1; 0 means 1
+}
+
+// defaultSteps is Options.Steps where it is 0.
+const defaultSteps = 50
 
 // Follow returns the line of descent of a bulk composition from its liquidus to
 // its end. An error means that the path could not be computed; a path that
 // fails its own checks is returned with Checks.Passed false.
 func Follow(sys *gibbs.System, bulk ternary.Composition, o Options) (*Path, error) {
-	if !bulk.Inside(0) {
-		return nil, fmt.Errorf("the bulk composition %.6g lies outside the triangle", [3]float64(bulk))
-	}
-	if o.Steps <= 0 {
-		o.Steps = 50
-	}
 	if o.Mode == "" {
 		o.Mode = Equilibrium
 	}
-	surf, err := liquidus.NewSurface(sys)
+	if err := o.validate(sys); err != nil {
+		return nil, err
+	}
+	w, primary, err := begin(sys, bulk, o.Mode, o.Steps)
 	if err != nil {
 		return nil, err
 	}
-	T, primary := surf.Liquidus(bulk)
-	if math.IsInf(T, -1) {
-		return nil, errors.New("no solid ever saturates in this liquid, so it does not freeze")
+	if o.Mode == Fractional {
+		w.keep = o.Retain
 	}
-	low, high := surf.Limits()
-	if math.IsInf(T, 1) {
-		return nil, fmt.Errorf("this composition is not all liquid at any temperature up to %.0f °C: %s, whose composition lies outside the triangle, is always saturated",
-			high-ternary.ZeroCelsius, sys.Solids[primary.Phase].Symbol)
+	w.path.Retain = w.keep
+	if err := w.plan(o.Removals); err != nil {
+		return nil, err
 	}
-	w := newWalk(sys, bulk, o, T, low)
-	switch o.Mode {
-	case Equilibrium:
+	if w.keep > 0 {
 		err = w.equilibrium(primary)
-	case Fractional:
+	} else {
 		err = w.fractional(primary)
-	default:
-		err = fmt.Errorf("mode %q is unknown", o.Mode)
 	}
 	if err != nil {
 		return nil, err
@@ -60,27 +70,119 @@ func Follow(sys *gibbs.System, bulk ternary.Composition, o Options) (*Path, erro
 	return w.path, nil
 }
 
-// walk is a path under way.
-type walk struct {
-	sys   *gibbs.System
-	bulk  ternary.Composition
-	mass  [3]float64 // g/mol of the components
-	total float64    // g per mole of bulk
-	low   float64    // K: lower limit
-	steps int
-	path  *Path
+// validate looks for options that contradict each other.
+func (o *Options) validate(sys *gibbs.System) error {
+	switch {
+	case o.Mode != Equilibrium && o.Mode != Fractional:
+		return fmt.Errorf("mode %q is not one of crystallisation: give %s or %s", o.Mode, Equilibrium, Fractional)
+	case !(o.Retain >= 0 && o.Retain <= 1):
+		return fmt.Errorf("the fraction of solids kept in contact is %g; it must lie between 0 and 1", o.Retain)
+	case o.Mode == Equilibrium && o.Retain != 0 && o.Retain != 1:
+		return fmt.Errorf("at equilibrium all solids stay in contact, so a fraction of %g kept has no meaning; use the mode %s", o.Retain, Fractional)
+	case o.Mode == Fractional && o.Retain == 0 && len(o.Removals) > 0:
+		return errors.New("solids that leave as they form cannot be removed later; use equilibrium or keep a fraction of them")
+	}
+	for _, r := range o.Removals {
+		if !(r.Fraction >= 0 && r.Fraction <= 1) {
+			return fmt.Errorf("the fraction to remove at %.2f °C is %g; it must lie between 0 and 1", r.T-ternary.ZeroCelsius, r.Fraction)
+		}
+		for _, p := range r.Phases {
+			if p < 0 || p >= len(sys.Solids) {
+				return fmt.Errorf("the removal at %.2f °C names solid %d; there are %d", r.T-ternary.ZeroCelsius, p, len(sys.Solids))
+			}
+		}
+	}
+	return nil
 }
 
-func newWalk(sys *gibbs.System, bulk ternary.Composition, o Options, T, low float64) *walk {
-	w := &walk{sys: sys, bulk: bulk, mass: sys.Components.MolarMasses(), low: low, steps: o.Steps}
+// begin finds the liquidus of the bulk and sets up a path.
+func begin(sys *gibbs.System, bulk ternary.Composition, mode Mode, steps int) (*walk, gibbs.State, error) {
+	if !bulk.Inside(0) {
+		return nil, gibbs.State{}, fmt.Errorf("the bulk composition %.6g lies outside the triangle", [3]float64(bulk))
+	}
+	if steps <= 0 {
+		steps = defaultSteps
+	}
+	surf, err := liquidus.NewSurface(sys)
+	if err != nil {
+		return nil, gibbs.State{}, err
+	}
+	T, primary := surf.Liquidus(bulk)
+	if math.IsInf(T, -1) {
+		return nil, primary, errors.New("no solid ever saturates in this liquid, so it does not freeze")
+	}
+	low, high := surf.Limits()
+	if math.IsInf(T, 1) {
+		return nil, primary, fmt.Errorf("this composition is not all liquid at any temperature up to %.0f °C: %s, whose composition lies outside the triangle, is always saturated",
+			high-ternary.ZeroCelsius, sys.Solids[primary.Phase].Symbol)
+	}
+	w := &walk{sys: sys, bulk: bulk, mass: sys.Components.MolarMasses(), low: low, high: high, steps: steps, dir: -1, keep: 1}
 	for i, m := range w.mass {
 		if m <= 0 { // components without formulas count by moles
 			w.mass[i] = 1
 		}
 	}
+	w.row = steps - 1
 	w.total = w.weigh(bulk)
-	w.path = &Path{System: sys, Mode: o.Mode, Bulk: bulk, LiquidT: T, Steps: make([]Step, 0, o.Steps+16)}
-	return w
+	w.gone.total = make([][3]float64, len(sys.Solids))
+	_, _, w.h0 = sys.Liquid.Gibbs(bulk, T)
+	w.path = &Path{System: sys, Mode: mode, Bulk: bulk, LiquidT: T, Steps: make([]Step, 0, steps+16)}
+	if sys.Liquid.CanUnmix(T) {
+		var pot gibbs.Potentials
+		x := [3]float64(bulk)
+		sys.Liquid.Potentials(&x, T, &pot)
+		self := []tangent.Part{{State: gibbs.State{Phase: gibbs.Liquid, Y: x}}}
+		for _, s := range tangent.Above(sys, pot.Mu, T, self, aboveTol) {
+			if s.Phase == gibbs.Liquid {
+				return nil, primary, fmt.Errorf("the liquid has separated into two already at %.2f °C, where its first solid would form: its path does not begin with one liquid", T-ternary.ZeroCelsius)
+			}
+		}
+	}
+	return w, primary, nil
+}
+
+// walk is a path under way.
+type walk struct {
+	sys       *gibbs.System
+	bulk      ternary.Composition
+	mass      [3]float64 // g/mol of the components
+	total     float64    // g per mole of bulk
+	low, high float64    // K: limits
+	steps     int
+	row       int     // the next row is due where the melt's mass is row/steps
+	dir       float64 // −1 on cooling, +1 on heating
+	keep      float64 // fraction of newly formed solids that stays in contact
+	h0        float64 // J per mole of bulk: enthalpy at the start
+	gone      stack   // solids removed
+	removals  []Removal
+	path      *Path
+}
+
+// stack is a sum of removed solids.
+type stack struct {
+	total [][3]float64 // moles of end-members by solid
+	h     float64      // J: enthalpy at the time of removal
+	used  bool         // something was removed
+}
+
+// plan sorts the removals by falling temperature.
+func (w *walk) plan(list []Removal) error {
+	for _, r := range list {
+		if !(r.T < w.path.LiquidT) {
+			return fmt.Errorf("nothing has crystallised yet at %.2f °C: the liquidus of this composition is at %.2f °C; choose a lower temperature for the removal", r.T-ternary.ZeroCelsius, w.path.LiquidT-ternary.ZeroCelsius)
+		}
+	}
+	w.removals = slices.Clone(list)
+	slices.SortStableFunc(w.removals, func(a, b Removal) int {
+		switch {
+		case a.T > b.T:
+			return -1
+		case a.T < b.T:
+			return 1
+		}
+		return 0
+	})
+	return nil
 }
 
 // weigh is the mass in g of contents c in moles of components.
@@ -105,4 +207,8 @@ func (w *walk) phase(i int) *gibbs.Phase {
 // end closes the path.
 func (w *walk) end(T float64, reason string) {
 	w.path.EndT, w.path.Reason = T, reason
+}
+
+func (w *walk) lost(T float64, err error) error {
+	return fmt.Errorf("the path was lost at %.3f °C: %w", T-ternary.ZeroCelsius, err)
 }

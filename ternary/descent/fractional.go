@@ -4,7 +4,6 @@ import (
 	"errors"
 	"math"
 
-	"thalweg/ternary"
 	"thalweg/ternary/gibbs"
 )
 
@@ -13,34 +12,42 @@ const (
 	// liquid's amount: far below what a figure or a table shows. The masses
 	// balance to rounding whatever it is (see melt).
 	fracTol = 1e-9
-	// fracMax is the longest step in u = −ln(mass of liquid).
-	fracMax = 0.25
+	// fracFirst and fracMax are the first and the longest step in
+	// u = −ln(mass of liquid), fracLast the longest once the rows are done.
+	fracFirst = 0.05
+	fracMax   = 0.5
+	fracLast  = 2.0
 	// fracMin is the shortest.
-	fracMin = 1e-12
+	fracMin = 1e-15
+	// fracShy is the step below which no solid is suspected to come and go within.
+	fracShy = 1e-3
 	// stillTol: where (change of the liquid's composition per unit u) × (mass of
 	// liquid left) is below this, the rest crystallises without change and the
 	// masses balance to better than 1e-12.
-	stillTol = 2e-14
-	// fracOver is the driving force, in RT, at which an absent solid has come in.
-	fracOver = 1e-11
-	// nearSaturated is the driving force, in RT, within which a solid counts as
-	// saturated when the forming set is chosen.
-	nearSaturated = 1e-9
+	stillTol = 1e-13
+	// exhausted is the amount, in moles per mole of bulk, at which a component
+	// that a solid solution takes up counts as used up in the liquid.
+	exhausted = 1e-15
+	// restoreTol is the driving force, in RT, to which solids are held saturated.
+	restoreTol = 1e-13
 )
 
 // fractional follows the path with every solid removed as it forms.
 func (w *walk) fractional(primary gibbs.State) error {
 	m := melt{n: w.bulk, T: w.path.LiquidT}
-	st := &stack{total: make([][3]float64, len(w.sys.Solids))}
 	saturated := []gibbs.State{primary}
-	u := 0.0
-	for stage := 0; stage < 200; stage++ {
+	for stage := 0; stage < maxStages; stage++ {
+		if k := liquidAmong(saturated); k >= 0 {
+			w.recordMelt(&m, &active{}, nil, "a second liquid")
+			w.end(m.T, "the liquid separates into two, which are not followed further apart from each other")
+			return nil
+		}
 		a, ok := w.choose(&m, saturated)
 		if !ok {
-			return w.finishAtPoint(&m, saturated, st)
+			return w.finishAtPoint(&m, saturated)
 		}
-		w.recordMelt(&m, &a, st, w.stageName(saturated, &a, stage))
-		next, done, err := w.stage(&m, &a, &u, st)
+		w.recordMelt(&m, &a, nil, w.stageName(saturated, &a, stage))
+		next, done, err := w.stage(&m, &a)
 		if err != nil {
 			return w.lost(m.T, err)
 		}
@@ -52,230 +59,230 @@ func (w *walk) fractional(primary gibbs.State) error {
 	return w.lost(m.T, errors.New("the path does not come to an end"))
 }
 
-// stack is the sum of the solids removed: moles of end-members by solid.
-type stack struct {
-	total [][3]float64
-}
-
-// stageName names what happens as a stage begins.
-func (w *walk) stageName(saturated []gibbs.State, a *active, stage int) string {
-	forming := func(p int) bool {
-		for j := 0; j < a.count; j++ {
-			if a.phase[j] == p {
-				return true
-			}
-		}
-		return false
-	}
-	var last []int
-	if n := len(w.path.Steps); n > 0 {
-		last = w.path.Steps[n-1].Crystallising
-	}
-	name := ""
-	add := func(s string) {
-		if name != "" {
-			name += ", "
-		}
-		name += s
-	}
-	for j := 0; j < a.count; j++ {
-		if stage == 0 || !contains(last, a.phase[j]) {
-			add(w.symbol(a.phase[j]) + " in")
+func liquidAmong(states []gibbs.State) int {
+	for k, s := range states {
+		if s.Phase == gibbs.Liquid {
+			return k
 		}
 	}
-	for _, p := range last {
-		if !forming(p) {
-			add(w.symbol(p) + " stops")
-		}
-	}
-	if name == "" {
-		for _, s := range saturated {
-			if !forming(s.Phase) {
-				add(w.symbol(s.Phase) + " touched")
-			}
-		}
-	}
-	return name
+	return -1
 }
 
 // stage integrates one set of forming solids to its end: another solid comes in,
 // one stops forming, or the liquid no longer changes.
-func (w *walk) stage(m *melt, a *active, u *float64, st *stack) (saturated []gibbs.State, done bool, err error) {
-	h := 0.02
-	row := w.nextRow(*u)
-	var f flow
+func (w *walk) stage(m *melt, a *active) (saturated []gibbs.State, done bool, err error) {
+	h := fracFirst
+	var f, g flow
+	var s arc
 	if !w.flowAt(m, a, &f) {
 		return nil, false, errors.New("the solids that form do not determine the liquid's course")
 	}
 	for {
-		if w.still(m, &f) {
-			w.finishStill(m, a, &f, st)
+		if w.still(&f) {
+			w.finishStill(m, a, &f)
 			return nil, true, nil
 		}
-		hit := false
-		step := math.Min(h, fracMax)
-		if *u+step >= row-1e-13 {
-			step, hit = row-*u, true
+		longest := fracMax
+		if w.row < 1 {
+			longest = fracLast
 		}
-		next, b, errSize, ok := w.advance(m, a, &f, step)
-		if !ok || errSize > fracTol {
-			if step < fracMin {
-				return nil, false, errors.New("the integration's steps became too short")
-			}
-			h = step * math.Max(0.2, 0.9*math.Pow(fracTol/math.Max(errSize, fracTol/1e5), 0.2))
-			if !ok {
-				h = step / 4
+		h = math.Min(h, longest)
+		if h < fracMin {
+			return nil, false, errCoarse
+		}
+		next, b, size, ok := w.advance(m, a, &f, h, &s)
+		if !ok || size > fracTol {
+			if ok {
+				h = math.Min(h/2, grown(h, size, fracTol))
+			} else {
+				h /= 4
 			}
 			continue
 		}
-		var g flow
 		if !w.flowAt(&next, &b, &g) {
-			h = step / 4
+			h /= 4
 			continue
 		}
 		if over, _ := w.excess(&next, &b, &g); over > 0 {
-			at, nb, sat, ok := w.stageEvent(m, a, &f, step)
+			at, nb, sat, ok := w.stageEvent(m, a, &f, h)
 			if !ok {
 				return nil, false, errors.New("an event could not be located")
 			}
-			*u += w.fold(m, &at, &nb, st)
+			w.stageRows(m, &b, &s, w.weigh(at.n))
+			w.fold(m, &at, &nb)
 			*a = nb
 			return sat, false, nil
 		}
+		if h > fracShy && w.shyMelt(m, &next, a, &f, &g, h) {
+			h /= 2
+			continue
+		}
 		if next.T < w.low {
-			w.recordMelt(m, a, st, "")
-			w.end(m.T, "the melt is still liquid at the lower limit of temperature")
+			w.recordMelt(m, a, nil, "")
+			w.end(m.T, w.atLimit())
 			return nil, true, nil
 		}
-		w.fold(m, &next, &b, st)
+		w.stageRows(m, &b, &s, w.weigh(next.n))
+		w.fold(m, &next, &b)
 		*a, f = b, g
-		if hit {
-			*u = row
-			w.recordMelt(m, a, st, "")
-			row = w.nextRow(*u)
-		} else {
-			*u += step
+		if w.exhaust(m, a, &f) && !w.flowAt(m, a, &f) {
+			return nil, false, errors.New("the liquid's course is not determined once a component is used up")
 		}
-		h = step * math.Min(3, 0.9*math.Pow(fracTol/math.Max(errSize, fracTol*1e-4), 0.2))
-		if hit {
-			h = math.Max(h, 0.02)
+		h = grown(h, size, fracTol)
+	}
+}
+
+// stageRows records the rows due between m and the state with the given mass of
+// liquid, from the interpolant of the step, brought back onto the curve.
+func (w *walk) stageRows(m *melt, a *active, s *arc, until float64) {
+	w0 := w.weigh(m.n)
+	for ; w.row > 0; w.row-- {
+		due := float64(w.row) / float64(w.steps) * w.total
+		if due < until*(1+1e-12) {
+			return
+		}
+		if due > w0*(1-1e-12) {
+			continue
+		}
+		r := s.at(math.Log(w0/due) / s.h)
+		b := *a
+		if w.restore(&r, &b, due) {
+			w.recordMelt(&r, &b, &r, "")
 		}
 	}
 }
 
-// nextRow is the next u at which a row is due: even spacing of the melt's mass.
-func (w *walk) nextRow(u float64) float64 {
-	n := float64(w.steps)
-	k := math.Ceil(math.Exp(-u)*n*(1-1e-12)) - 1
-	if k < 1 {
-		return math.Inf(1)
+// advance makes one step of length h in u from m, whose flow is f0, and brings
+// the result back onto its curve. It returns the new melt, the active solids
+// with their fractions there, and the estimated error relative to the liquid.
+func (w *walk) advance(m *melt, a *active, f0 *flow, h float64, s *arc) (melt, active, float64, bool) {
+	b := *a
+	var f flow
+	s.h, s.from, s.bent = h, *m, false
+	s.k[0] = f0.d
+	var e melt
+	ok := s.dopri(func(m, rate *melt) bool {
+		if !positive(m) || !w.flowAt(m, &b, &f) {
+			return false
+		}
+		for j := 0; j < b.count; j++ {
+			b.y[j] = f.st[j].Y
+		}
+		*rate = f.d
+		return true
+	}, &e)
+	if !ok {
+		return s.to, b, math.Inf(1), false
 	}
-	return -math.Log(k / n)
+	next := s.to
+	sum := next.n[0] + next.n[1] + next.n[2]
+	size := math.Abs(e.T) / next.T
+	for i := range e.n {
+		size = math.Max(size, math.Abs(e.n[i])/sum)
+	}
+	ok = w.restore(&next, &b, w.weigh(m.n)*math.Exp(-h))
+	return next, b, size, ok
 }
 
-// fold replaces m by next and books what was removed; it returns the change of u.
-func (w *walk) fold(m, next *melt, a *active, st *stack) float64 {
-	du := math.Log(w.weigh(m.n) / w.weigh(next.n))
+func positive(m *melt) bool {
+	return m.n[0] >= 0 && m.n[1] >= 0 && m.n[2] >= 0 && m.T > 0 && m.n[0]+m.n[1]+m.n[2] > 0
+}
+
+// restore brings the melt back onto the surface or curve of its active solids
+// and to the given mass of liquid, by removing small amounts of them and by T.
+func (w *walk) restore(m *melt, a *active, mass float64) bool {
+	var f flow
+	for round := 0; round < 8; round++ {
+		w.liquidAt(m, &f)
+		off := 0.0
+		for j := 0; j < a.count; j++ {
+			f.st[j] = w.sys.Solids[a.phase[j]].DriveFrom(&f.pot.Mu, m.T, a.y[j])
+			a.y[j] = f.st[j].Y
+			off = math.Max(off, math.Abs(f.st[j].D))
+		}
+		lost := (f.mass - mass) / f.mass
+		if off <= restoreTol*8.3*m.T && math.Abs(lost) <= 1e-14 {
+			return true
+		}
+		r, dT, ok := w.rates(m, a, &f, goal{restore: true, lost: lost})
+		if !ok {
+			return false
+		}
+		T := m.T
+		for j := 0; j < a.count; j++ {
+			w.remove(m, T, &f, j, r[j]*f.mass)
+		}
+		m.T += dT
+		if !positive(m) {
+			return false
+		}
+	}
+	return true
+}
+
+// exhaust takes the last trace of a component out of the liquid, with the solid
+// solution that drew it down: its fraction falls as F^(K−1), with K beyond all
+// bounds at times, and would stop the integration. Solids that cannot do without
+// the component keep it.
+func (w *walk) exhaust(m *melt, a *active, f *flow) (done bool) {
+	for i := range m.n {
+		if !(m.n[i] > 0 && m.n[i] < exhausted && f.d.n[i] < 0) {
+			continue
+		}
+		solid, member := -1, -1
+		spared := true
+		for j := 0; j < a.count; j++ {
+			without := false
+			for k, e := range w.sys.Solids[a.phase[j]].Members {
+				switch {
+				case e.C[i] == 0:
+					without = without || a.y[j][k] > 0
+				case e.C[i] > 0 && (solid < 0 || a.y[j][k]*e.C[i] > a.y[solid][member]*w.sys.Solids[a.phase[solid]].Members[member].C[i]):
+					solid, member = j, k
+				}
+			}
+			spared = spared && without
+		}
+		if solid < 0 || !spared {
+			continue
+		}
+		e := &w.sys.Solids[a.phase[solid]].Members[member]
+		n := m.n[i] / e.C[i]
+		for l, c := range e.C {
+			m.n[l] -= n * c
+		}
+		m.n[i] = 0
+		w.gone.total[a.phase[solid]][member] += n
+		for j := 0; j < a.count; j++ {
+			for k, e := range w.sys.Solids[a.phase[j]].Members {
+				if e.C[i] != 0 {
+					a.y[j][k] = 0
+				}
+			}
+			sum := a.y[j][0] + a.y[j][1] + a.y[j][2]
+			for k := range a.y[j] {
+				a.y[j][k] /= sum
+			}
+		}
+		done = true
+	}
+	return done
+}
+
+// fold replaces m by next and books what was removed.
+func (w *walk) fold(m, next *melt, a *active) {
 	for j := 0; j < a.count; j++ {
 		for k := range next.removed[j] {
-			st.total[a.phase[j]][k] += next.removed[j][k]
+			w.gone.total[a.phase[j]][k] += next.removed[j][k]
 		}
 	}
+	w.gone.h += next.q
 	*m = *next
-	m.removed = [3][3]float64{}
-	return du
+	m.removed, m.q = [3][3]float64{}, 0
 }
 
 // still reports that what is left will crystallise without changing.
-func (w *walk) still(m *melt, f *flow) bool {
+func (w *walk) still(f *flow) bool {
 	d := math.Max(math.Abs(f.dx[0]), math.Max(math.Abs(f.dx[1]), math.Abs(f.dx[2])))
 	return d*f.mass/w.total < stillTol
-}
-
-// excess is how far a point lies beyond the nearest event: the largest driving
-// force of a solid that does not form, or the largest negative rate. The solid
-// concerned is returned with it. f is the flow at the point.
-func (w *walk) excess(m *melt, a *active, f *flow) (float64, gibbs.State) {
-	over, who := math.Inf(-1), gibbs.State{}
-	for j := 0; j < a.count; j++ {
-		if v := -f.r[j] * w.weigh(f.st[j].C); v > over {
-			over, who = v, gibbs.State{Phase: a.phase[j], Y: f.st[j].Y, C: f.st[j].C}
-		}
-	}
-	rt := ternary.R * m.T
-	for i, p := range w.sys.Solids {
-		if i == a.phase[0] || a.count > 1 && i == a.phase[1] || a.count > 2 && i == a.phase[2] {
-			continue
-		}
-		d := p.Drive(&f.pot.Mu, m.T)
-		if v := d.D/rt - fracOver; v > over {
-			over, who = v, gibbs.State{Phase: i, Y: d.Y, C: d.C}
-		}
-	}
-	return over, who
-}
-
-// stageEvent finds the point within a step at which the excess vanishes, and the
-// solids saturated there.
-func (w *walk) stageEvent(m *melt, a *active, f *flow, step float64) (at melt, b active, saturated []gibbs.State, ok bool) {
-	lo, hi := 0.0, step
-	flo, _ := w.excess(m, a, f)
-	if flo > 0 {
-		flo = -1e-300
-	}
-	end, eb, _, _ := w.advance(m, a, f, step)
-	var g flow
-	if !w.flowAt(&end, &eb, &g) {
-		return at, b, nil, false
-	}
-	fhi, who := w.excess(&end, &eb, &g)
-	at, b = end, eb
-	side := 0
-	for round := 0; round < 100; round++ {
-		h := hi - fhi*(hi-lo)/(fhi-flo)
-		if !(h > lo && h < hi) || math.IsInf(fhi, 0) || round%4 == 3 {
-			h = (lo + hi) / 2
-		}
-		next, nb, _, good := w.advance(m, a, f, h)
-		if !good || !w.flowAt(&next, &nb, &g) {
-			return at, b, nil, false
-		}
-		v, s := w.excess(&next, &nb, &g)
-		if v > 0 {
-			hi, fhi, who = h, v, s
-			at, b = next, nb
-			if side == 1 {
-				flo /= 2
-			}
-			side = 1
-		} else {
-			lo, flo = h, v
-			if side == 2 {
-				fhi /= 2
-			}
-			side = 2
-		}
-		if v > 0 && v < 1e-13 || hi-lo < 1e-15 {
-			break
-		}
-	}
-	for j := 0; j < b.count; j++ {
-		var c gibbs.State
-		c.Phase, c.Y = b.phase[j], b.y[j]
-		c.C = w.sys.Solids[c.Phase].Contents(c.Y)
-		saturated = append(saturated, c)
-	}
-	if !forms(&b, who.Phase) {
-		saturated = append(saturated, who)
-	}
-	return at, b, saturated, true
-}
-
-func forms(a *active, phase int) bool {
-	for j := 0; j < a.count; j++ {
-		if a.phase[j] == phase {
-			return true
-		}
-	}
-	return false
 }

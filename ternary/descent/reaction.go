@@ -11,10 +11,10 @@ import (
 // dependence that counts as exact.
 const dependTol = 1e-9
 
-// nullReaction looks for the one reaction among the parts: amounts v with
-// Σ v·c = 0, turned so that it releases heat (it runs on cooling) and scaled to
-// max |v| = 1. dependent is false when the compositions are independent.
-func (w *walk) nullReaction(parts []tangent.Part) (v []float64, dependent bool) {
+// nullReaction looks for the one reaction among the parts at T: amounts v with
+// Σ v·c = 0, turned so that it releases heat on cooling and takes it up on
+// heating, and scaled to max |v| = 1. dependent is false when the compositions are independent.
+func (w *walk) nullReaction(parts []tangent.Part, T float64) (v []float64, dependent bool) {
 	n := len(parts)
 	// Gauss–Jordan on the 3×n matrix of compositions, with full pivoting.
 	a := make([][3]float64, n)
@@ -68,12 +68,11 @@ func (w *walk) nullReaction(parts []tangent.Part) (v []float64, dependent bool) 
 			v[c] = -a[free][r]
 		}
 	}
-	return w.turn(parts, v), true
+	return w.turn(parts, v, T), true
 }
 
-// turn gives a reaction the direction that releases heat and unit size.
-func (w *walk) turn(parts []tangent.Part, v []float64) []float64 {
-	T := w.path.LiquidT
+// turn gives a reaction the direction in which it runs, and unit size.
+func (w *walk) turn(parts []tangent.Part, v []float64, T float64) []float64 {
 	entropy, size := 0.0, 0.0
 	for j, p := range parts {
 		_, s, _ := w.phase(p.State.Phase).Gibbs(p.State.Y, T)
@@ -83,7 +82,7 @@ func (w *walk) turn(parts []tangent.Part, v []float64) []float64 {
 		}
 		size = math.Max(size, math.Abs(v[j]))
 	}
-	if entropy > 0 {
+	if entropy*w.dir < 0 {
 		size = -size
 	}
 	for j := range v {

@@ -20,6 +20,9 @@ const (
 	// quadratically, so that it need not be checked against the height, whose
 	// rounding would hide the gain.
 	driveSure = 1e-3
+	// flatTol is the curvature, relative to that of ideal mixing, below which the
+	// phase counts as not convex and Newton's step is replaced by an uphill one.
+	flatTol = 1e-8
 	// driveRounds bounds Newton's iteration; it takes 3 to 8 in practice.
 	driveRounds = 60
 )
@@ -336,7 +339,7 @@ func (p *Phase) newton(d, y *[3]float64, srt float64, w weights, base int, idx [
 		}
 	}
 	if free == 1 {
-		if j[0][0] > 1e-3*srt {
+		if j[0][0] > flatTol*srt {
 			step[0] = f[0] / j[0][0]
 		} else {
 			step[0] = f[0] / srt
@@ -344,7 +347,7 @@ func (p *Phase) newton(d, y *[3]float64, srt float64, w weights, base int, idx [
 		return step, math.Abs(step[0])
 	}
 	det := j[0][0]*j[1][1] - j[0][1]*j[1][0]
-	if j[0][0] > 0 && det > 1e-6*srt*srt {
+	if j[0][0] > 0 && det > flatTol*srt*srt {
 		step[0] = (f[0]*j[1][1] - f[1]*j[0][1]) / det
 		step[1] = (f[1]*j[0][0] - f[0]*j[1][0]) / det
 	} else {
@@ -360,140 +363,6 @@ func shift(y [3]float64, base int, idx [2]int, free int, step [2]float64, scale 
 	}
 	s := y[0] + y[1] + y[2]
 	return [3]float64{y[0] / s, y[1] / s, y[2] / s}
-}
-
-// Starts of the search for all maxima of a phase that can unmix: a mesh fine
-// enough that each basin of a Redlich–Kister model of low order holds a node.
-const (
-	startMesh2 = 24
-	startMesh3 = 10
-)
-
-// maxima finds all local maxima of the driving force: the nodes of a mesh that
-// are not lower than their neighbours are starts of Newton's method.
-func (p *Phase) maxima(d *[3]float64, T float64) []Drive {
-	var starts [][3]float64
-	if len(p.Members) == 2 || p.dead(d) {
-		starts = p.starts2(d, T)
-	} else {
-		starts = p.starts3(d, T)
-	}
-	out := make([]Drive, 0, 3)
-	for _, y := range starts {
-		q := p.climb(d, y, T)
-		if !p.isMaximum(q.Y, T) {
-			continue
-		}
-		known := false
-		for i := range out {
-			if near(out[i].Y, q.Y) {
-				known = true
-				if q.D > out[i].D {
-					out[i] = q
-				}
-			}
-		}
-		if !known {
-			out = append(out, q)
-		}
-	}
-	for i := 1; i < len(out); i++ { // insertion sort: highest first
-		for k := i; k > 0 && out[k].D > out[k-1].D; k-- {
-			out[k], out[k-1] = out[k-1], out[k]
-		}
-	}
-	return out
-}
-
-// dead reports that a phase of three end-members has one at −Inf.
-func (p *Phase) dead(d *[3]float64) bool {
-	for k := range p.Members {
-		if math.IsInf(d[k], -1) {
-			return true
-		}
-	}
-	return false
-}
-
-// isMaximum rejects points at which Newton's method stalled on a saddle.
-func (p *Phase) isMaximum(y [3]float64, T float64) bool {
-	for k := range p.Members {
-		if y[k] <= 1e-12 {
-			return true // against a wall of the ideal entropy
-		}
-	}
-	return p.ConvexAt(y, T)
-}
-
-func near(a, b [3]float64) bool {
-	return math.Abs(a[0]-b[0])+math.Abs(a[1]-b[1])+math.Abs(a[2]-b[2]) < 2*driveSame
-}
-
-// starts2 returns the mesh maxima along the two live end-members.
-func (p *Phase) starts2(d *[3]float64, T float64) [][3]float64 {
-	a, b := -1, -1
-	for k := range p.Members {
-		if math.IsInf(d[k], -1) {
-			continue
-		}
-		if a < 0 {
-			a = k
-		} else {
-			b = k
-		}
-	}
-	srt, w := p.Mixing.Sites*rGas*T, atT(T)
-	var h [startMesh2 + 1]float64
-	at := func(i int) (y [3]float64) {
-		t := (float64(i) + 0.01) / (startMesh2 + 0.02)
-		y[a], y[b] = t, 1-t
-		return y
-	}
-	for i := range h {
-		y := at(i)
-		h[i] = p.height(d, &y, srt, w)
-	}
-	var out [][3]float64
-	for i := range h {
-		if (i == 0 || h[i] >= h[i-1]) && (i == startMesh2 || h[i] >= h[i+1]) {
-			out = append(out, at(i))
-		}
-	}
-	return out
-}
-
-// starts3 returns the mesh maxima of a phase of three end-members.
-func (p *Phase) starts3(d *[3]float64, T float64) [][3]float64 {
-	const n = startMesh3
-	srt, w := p.Mixing.Sites*rGas*T, atT(T)
-	var h [n + 1][n + 1]float64
-	at := func(i, j int) [3]float64 {
-		const e = 0.01
-		s := n + 3*e
-		return [3]float64{(float64(i) + e) / s, (float64(j) + e) / s, (float64(n-i-j) + e) / s}
-	}
-	for i := 0; i <= n; i++ {
-		for j := 0; i+j <= n; j++ {
-			y := at(i, j)
-			h[i][j] = p.height(d, &y, srt, w)
-		}
-	}
-	var out [][3]float64
-	for i := 0; i <= n; i++ {
-		for j := 0; i+j <= n; j++ {
-			top := true
-			for _, s := range [6][2]int{{1, 0}, {-1, 0}, {0, 1}, {0, -1}, {1, -1}, {-1, 1}} {
-				a, b := i+s[0], j+s[1]
-				if a >= 0 && b >= 0 && a+b <= n && h[a][b] > h[i][j] {
-					top = false
-				}
-			}
-			if top {
-				out = append(out, at(i, j))
-			}
-		}
-	}
-	return out
 }
 
 // Curvature returns the second derivatives of D with respect to the plane,

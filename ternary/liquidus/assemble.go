@@ -22,7 +22,7 @@ func (e *engine) assemble() *Projection {
 	for n := range e.nodes {
 		nd := &e.nodes[n]
 		switch nd.Kind {
-		case Maximum, Minimum, LoopStart, AtApex:
+		case Maximum, Minimum, LoopStart, AtApex, Critical:
 		default:
 			nd.Coefficients = reaction(nd.Liquid, nd.Solids)
 			nd.Kind = kindOfNode(nd.Coefficients)
@@ -31,9 +31,15 @@ func (e *engine) assemble() *Projection {
 					nd.Kind = Metatectic
 				}
 			}
+			if nd.Solids[len(nd.Solids)-1].Phase == gibbs.Liquid {
+				nd.Kind = Monotectic
+			}
 		}
 	}
 	e.nameNodes(p)
+	for _, ed := range e.edges {
+		e.findStops(ed, p.Nodes)
+	}
 	e.buildFields(p)
 	return p
 }
@@ -42,7 +48,7 @@ func (e *engine) assemble() *Projection {
 func (e *engine) heatOf(nd *Node) float64 {
 	_, s, _ := e.sys.Liquid.Gibbs(nd.Liquid, nd.T)
 	for k, st := range nd.Solids {
-		_, sk, _ := e.sys.Solids[st.Phase].Gibbs(st.Y, nd.T)
+		_, sk, _ := e.phaseOf(st.Phase).Gibbs(st.Y, nd.T)
 		s -= nd.Coefficients[k] * sk
 	}
 	return nd.T * s
@@ -98,7 +104,7 @@ func (e *engine) nodeAt(k Kind, p tracePoint) int {
 func (e *engine) addArc(p *Projection, r rawCurve, pts []tracePoint, from, to int) {
 	first, last := pts[0], pts[len(pts)-1]
 	down := first.z[2] > last.z[2]
-	if first.z[2] == last.z[2] || e.samePlace(r.a, r.b) {
+	if first.z[2] == last.z[2] || r.b >= 0 && e.samePlace(r.a, r.b) {
 		down = from <= to
 	}
 	if !down {
@@ -212,7 +218,7 @@ func (e *engine) nameNodes(p *Projection) {
 	}
 	rank := func(nd *Node) int {
 		switch {
-		case nd.Kind == Maximum, nd.Kind == Minimum, nd.Kind == LoopStart, nd.Kind == AtApex:
+		case nd.Kind == Maximum, nd.Kind == Minimum, nd.Kind == LoopStart, nd.Kind == AtApex, nd.Kind == Critical:
 			return 2
 		case nd.Edge >= 0:
 			return 1
@@ -226,8 +232,8 @@ func (e *engine) nameNodes(p *Projection) {
 		}
 		return a.T > b.T
 	})
-	prefix := map[Kind]string{Metatectic: "M", Eutectic: "E", ReactionPoint: "R", Peritectic: "P", Transition: "T"}
-	small := map[Kind]string{Metatectic: "d", Eutectic: "e", ReactionPoint: "r", Peritectic: "p", Transition: "t",
+	prefix := map[Kind]string{Monotectic: "M", Metatectic: "X", Eutectic: "E", ReactionPoint: "R", Peritectic: "P", Transition: "T"}
+	small := map[Kind]string{Monotectic: "l", Metatectic: "x", Critical: "c", Eutectic: "e", ReactionPoint: "r", Peritectic: "p", Transition: "t",
 		Maximum: "m", Minimum: "n", LoopStart: "o", AtApex: "a"}
 	count := map[string]int{}
 	place := make([]int, n)
@@ -241,6 +247,11 @@ func (e *engine) nameNodes(p *Projection) {
 		nd.ID = fmt.Sprintf("%s%d", id, count[id])
 		place[from] = to
 		p.Nodes = append(p.Nodes, nd)
+	}
+	for i := range p.Nodes {
+		if c := p.Nodes[i].Conjugate; c >= 0 {
+			p.Nodes[i].Conjugate = place[c]
+		}
 	}
 	for i := range p.Curves {
 		p.Curves[i].From, p.Curves[i].To = place[p.Curves[i].From], place[p.Curves[i].To]
@@ -272,11 +283,6 @@ func (e *engine) finish(p *Projection) {
 		e.problem(fmt.Sprintf("an invariant point is solved only to %.1e RT", ck.MaxResidual))
 	}
 	e.checkDirections(p)
-	p.Unmixed = e.unmixed
-	if len(e.unmixed) > 0 {
-		e.problem(fmt.Sprintf("the liquid separates into two on the liquidus at %d of %d nodes, first at %s: the projection is not complete there",
-			len(e.unmixed), (e.mesh.n+1)*(e.mesh.n+2)/2, e.place(e.unmixed[0])))
-	}
 	ck.Problems = e.problems
 	ck.Passed = len(e.problems) == 0
 }
@@ -288,7 +294,7 @@ func (e *engine) finish(p *Projection) {
 func (e *engine) checkDirections(p *Projection) {
 	for i := range p.Curves {
 		c := &p.Curves[i]
-		if e.samePlace(c.Solids[0], c.Solids[1]) {
+		if c.Solids[1] >= 0 && e.samePlace(c.Solids[0], c.Solids[1]) {
 			continue
 		}
 		for _, at := range [2]int{c.From, c.To} {
@@ -296,8 +302,14 @@ func (e *engine) checkDirections(p *Projection) {
 			if len(nd.Coefficients) != 3 {
 				continue
 			}
-			for k, st := range nd.Solids {
-				if st.Phase == c.Solids[0] || st.Phase == c.Solids[1] {
+			end := c.Points[0].Solids
+			if at == c.To {
+				end = c.Points[len(c.Points)-1].Solids
+			}
+			i, j := matchStates(nd.Solids, end[0], -1), -1
+			j = matchStates(nd.Solids, end[1], i)
+			for k := range nd.Solids {
+				if k == i || k == j {
 					continue
 				}
 				towards := at == c.To

@@ -15,10 +15,10 @@ const (
 	edgeHug   = 1e-6  // nearer than this an invariant point is solved for directly
 	edgeLeast = 1e-15 // the nearest that is tried
 	knownNear = 2e-4  // a point this close to a curve of its solids lies on it
-	portEmpty = -1000 // no phase
 )
 
-// port is a curve's end at a node: the two solids along it.
+// port is a curve's end at a node: the two of the node's phases that go along it,
+// as indices in Node.Solids.
 type port struct{ a, b int }
 
 // departure is a curve still to be followed from a node.
@@ -27,7 +27,8 @@ type departure struct {
 	port port
 }
 
-// rawCurve is a followed curve between nodes; from = to = -1 for a ring.
+// rawCurve is a followed curve between nodes; from = to = -1 for a ring. b is
+// gibbs.Liquid along a monotectic curve.
 type rawCurve struct {
 	a, b     int
 	from, to int
@@ -35,16 +36,45 @@ type rawCurve struct {
 }
 
 func (e *engine) addNode(n Node) int {
+	n.Conjugate = -1
 	e.nodes = append(e.nodes, n)
 	e.ports = append(e.ports, nil)
 	return len(e.nodes) - 1
 }
 
-func makePort(a, b int) port {
-	if a > b {
-		a, b = b, a
+// portOf is the port of a node through which a curve of two phases leaves: the
+// node's phases that are nearest in composition.
+func (e *engine) portOf(node int, a, b gibbs.State) port {
+	i, j := e.match(node, a, -1), -1
+	j = e.match(node, b, i)
+	if i > j {
+		i, j = j, i
 	}
-	return port{a, b}
+	return port{i, j}
+}
+
+// match finds the phase of a node that is a state, other than number not.
+func (e *engine) match(node int, st gibbs.State, not int) int {
+	return matchStates(e.nodes[node].Solids, st, not)
+}
+
+// matchStates finds the state of a list that is nearest in composition to st and
+// of its phase, other than number not; -1 where there is none.
+func matchStates(list []gibbs.State, st gibbs.State, not int) int {
+	best, dist := -1, math.Inf(1)
+	for i, s := range list {
+		if i == not || s.Phase != st.Phase {
+			continue
+		}
+		d := 0.0
+		for k := range s.Y {
+			d += math.Abs(s.Y[k] - st.Y[k])
+		}
+		if d < dist {
+			best, dist = i, d
+		}
+	}
+	return best
 }
 
 // take marks a port as used; it reports false when it was already.
@@ -70,8 +100,7 @@ func (e *engine) followEdges() {
 func (e *engine) followFromEdge(ed *edge, node int, at float64) {
 	nd := &e.nodes[node]
 	sa, sb := nd.Solids[0], nd.Solids[1]
-	p := makePort(sa.Phase, sb.Phase)
-	if !e.take(node, p) {
+	if !e.take(node, port{0, 1}) {
 		return
 	}
 	third := -1
@@ -135,8 +164,8 @@ func (e *engine) hugging(node int, s *site, a, b constraint, third int) bool {
 	if !e.solvePoint(s, &a, &b, &c) {
 		return false
 	}
-	end := tracePoint{x: s.x, z: s.z, a: a.state(), b: b.state()}
-	to, ok := e.invariant(end, third)
+	end := tracePoint{x: s.x, z: s.z, a: a.state(), b: b.state(), c: c.state()}
+	to, ok := e.invariant(end)
 	if !ok {
 		return false
 	}
@@ -147,8 +176,7 @@ func (e *engine) hugging(node int, s *site, a, b constraint, third int) bool {
 		head.a, head.b = head.b, head.a
 	}
 	end.t = head.t
-	e.take(to, makePort(a.phase, b.phase))
-	e.addCurve(rawCurve{a: a.phase, b: b.phase, from: node, to: to, points: []tracePoint{head, end}})
+	e.file(rawCurve{a: a.phase, b: b.phase, from: node, to: to, points: []tracePoint{head, end}})
 	return true
 }
 
@@ -165,17 +193,10 @@ func (e *engine) followPending() {
 
 func (e *engine) followFromNode(node int, p port) {
 	nd := &e.nodes[node]
-	var a, b, c constraint
-	c.phase = portEmpty
-	for _, st := range nd.Solids {
-		switch k := (constraint{phase: st.Phase, y: st.Y}); st.Phase {
-		case p.a:
-			a = k
-		case p.b:
-			b = k
-		default:
-			c = k
-		}
+	as := func(i int) constraint { return constraint{phase: nd.Solids[i].Phase, y: nd.Solids[i].Y} }
+	a, b, c := as(p.a), as(p.b), as(3-p.a-p.b)
+	if a.phase == gibbs.Liquid { // the second liquid comes last
+		a, b = b, a
 	}
 	var s site
 	s.setOn(e, nd.Liquid, nd.T)
@@ -184,7 +205,7 @@ func (e *engine) followFromNode(node int, p port) {
 	_, gc := c.eval(e, &s)
 	dir, ok := tangent(ga, gb, vec{1, 1, 1})
 	if !ok {
-		e.problem(fmt.Sprintf("the curve of %s and %s has no direction at %s", e.symbol(p.a), e.symbol(p.b), e.place(nd.Liquid)))
+		e.problem(fmt.Sprintf("the curve of %s and %s has no direction at %s", e.symbol(a.phase), e.symbol(b.phase), e.place(nd.Liquid)))
 		return
 	}
 	if gc.dot(dir) > 0 {
@@ -203,21 +224,18 @@ func (e *engine) followSeed(s *site, a, b constraint) {
 	}
 	ahead := newTracer(e, a, b).run(s.place(), dir, true)
 	if ahead.end == endClosed {
-		e.addCurve(rawCurve{a: a.phase, b: b.phase, from: -1, to: -1, points: ahead.points})
+		e.file(rawCurve{a: a.phase, b: b.phase, from: -1, to: -1, points: ahead.points})
 		return
 	}
 	back := newTracer(e, a, b).run(s.place(), dir.scaled(-1), false)
-	from, ok1 := e.endNode(a.phase, b.phase, back)
-	to, ok2 := e.endNode(a.phase, b.phase, ahead)
+	from, ok1 := e.endNode(a.phase, b.phase, &back)
+	to, ok2 := e.endNode(a.phase, b.phase, &ahead)
 	if !ok1 || !ok2 {
 		return
 	}
 	pts := reversed(back.points)
 	pts = append(pts[:len(pts)-1], ahead.points...)
-	p := makePort(a.phase, b.phase)
-	e.take(from, p)
-	e.take(to, p)
-	e.addCurve(rawCurve{a: a.phase, b: b.phase, from: from, to: to, points: pts})
+	e.file(rawCurve{a: a.phase, b: b.phase, from: from, to: to, points: pts})
 }
 
 func reversed(pts []tracePoint) []tracePoint {
@@ -232,15 +250,28 @@ func reversed(pts []tracePoint) []tracePoint {
 // finishCurve files a curve that began at a node.
 func (e *engine) finishCurve(node int, head []tracePoint, t traced) {
 	first := t.points[0]
-	to, ok := e.endNode(first.a.Phase, first.b.Phase, t)
+	to, ok := e.endNode(first.a.Phase, first.b.Phase, &t)
 	if !ok {
 		return
 	}
-	e.take(to, makePort(first.a.Phase, first.b.Phase))
-	e.addCurve(rawCurve{a: first.a.Phase, b: first.b.Phase, from: node, to: to, points: append(head, t.points...)})
+	e.file(rawCurve{a: first.a.Phase, b: first.b.Phase, from: node, to: to, points: append(head, t.points...)})
 }
 
-func (e *engine) addCurve(c rawCurve) {
+// file adds a followed curve, marks its ports, and does the same for the
+// conjugate side of a monotectic curve.
+func (e *engine) file(c rawCurve) {
+	e.markPorts(&c)
+	if c.b == gibbs.Liquid {
+		o, ok := e.conjugate(&c)
+		if !ok {
+			return
+		}
+		e.markPorts(&o)
+		e.raw = append(e.raw, c, o)
+		e.mesh.mark(c.points, c.a, e.splitCode())
+		e.mesh.mark(o.points, c.a, e.splitCode())
+		return
+	}
 	if c.a > c.b {
 		c.a, c.b = c.b, c.a
 		for i := range c.points {
@@ -252,33 +283,61 @@ func (e *engine) addCurve(c rawCurve) {
 	e.mesh.mark(c.points, c.a, c.b)
 }
 
+func (e *engine) markPorts(c *rawCurve) {
+	if c.from < 0 {
+		return
+	}
+	first, last := &c.points[0], &c.points[len(c.points)-1]
+	e.take(c.from, e.portOf(c.from, first.a, first.b))
+	e.take(c.to, e.portOf(c.to, last.a, last.b))
+}
+
 // endNode finds or makes the node at which a followed curve ends.
-func (e *engine) endNode(a, b int, t traced) (int, bool) {
+func (e *engine) endNode(a, b int, t *traced) (int, bool) {
 	last := t.points[len(t.points)-1]
 	x := last.x
 	T := last.z[2] * e.tRef
 	switch t.end {
 	case endPhase:
-		return e.invariant(last, t.phase)
+		return e.invariant(last)
 	case endEdge:
 		x[t.edge] = 0
 		ed := e.edges[t.edge]
 		for _, n := range ed.nodes {
 			nd := &e.nodes[n]
-			if nd.Liquid.Distance(x) < 1e-6 && makePort(nd.Solids[0].Phase, nd.Solids[1].Phase) == makePort(a, b) {
+			if nd.Liquid.Distance(x) < 1e-6 && (nd.Solids[0].Phase == a && nd.Solids[1].Phase == b || nd.Solids[0].Phase == b && nd.Solids[1].Phase == a) {
 				return n, true
 			}
 		}
-		e.problem(fmt.Sprintf("the curve of %s and %s reaches the edge without %s at %s, where the edge has no such point", e.symbol(a), e.symbol(b), e.sys.Components[t.edge].Symbol, e.place(x)))
-		return 0, false
+		return e.edgeNodeFrom(ed, &last), true
 	case endApex:
 		return e.apexNode(t.edge, last), true
+	case endCritical:
+		return e.criticalNode(t), true
 	case endLimit:
 		e.problem(fmt.Sprintf("the curve of %s and %s rises beyond %.0f K at %s", e.symbol(a), e.symbol(b), T, e.place(x)))
 		return 0, false
 	}
 	e.problem(fmt.Sprintf("the curve of %s and %s was lost after %d points at %s, %.1f K", e.symbol(a), e.symbol(b), len(t.points), e.place(x), T))
 	return 0, false
+}
+
+// edgeNodeFrom adds a node that the scan of an edge missed and a curve led to.
+func (e *engine) edgeNodeFrom(ed *edge, p *tracePoint) int {
+	x := p.x
+	x[ed.k] = 0
+	add := func(x ternary.Composition, a, b gibbs.State) int {
+		n := e.addNode(Node{Edge: ed.k, Liquid: x, T: p.z[2] * e.tRef, Solids: []gibbs.State{a, b}})
+		ed.nodes = append(ed.nodes, n)
+		ed.at = append(ed.at, x[(ed.k+2)%3])
+		return n
+	}
+	n := add(x, p.a, p.b)
+	if p.b.Phase == gibbs.Liquid {
+		m := add(ternary.Composition(p.b.C), p.a, gibbs.State{Phase: gibbs.Liquid, Y: x, C: x})
+		e.nodes[n].Conjugate, e.nodes[m].Conjugate = m, n
+	}
+	return n
 }
 
 // apexNode finds or makes the node for a curve that ends in an apex, as the
@@ -292,30 +351,37 @@ func (e *engine) apexNode(k int, p tracePoint) int {
 	return e.addNode(Node{Kind: AtApex, Edge: -1, Liquid: ternary.Apex(k), T: p.z[2] * e.tRef, Solids: []gibbs.State{p.a, p.b}})
 }
 
-// invariant finds or makes the node at which three solids coexist with liquid.
-func (e *engine) invariant(p tracePoint, third int) (int, bool) {
+// invariant finds or makes the node at which three phases coexist with liquid.
+func (e *engine) invariant(p tracePoint) (int, bool) {
 	var s site
 	s.set(e, p.place())
-	c := constraint{phase: third}
-	c.y = e.sys.Solids[third].Drive(&s.pot.Mu, s.T).Y
-	c.eval(e, &s)
-	a := constraint{phase: p.a.Phase, y: p.a.Y}
-	b := constraint{phase: p.b.Phase, y: p.b.Y}
-	ra, _ := a.eval(e, &s)
-	rb, _ := b.eval(e, &s)
-	solids := []gibbs.State{a.state(), b.state(), c.state()}
-	sort.Slice(solids, func(i, j int) bool { return solids[i].Phase < solids[j].Phase })
+	var cs [3]constraint
+	res := 0.0
+	for i, st := range [3]gibbs.State{p.a, p.b, p.c} {
+		cs[i] = constraint{phase: st.Phase, y: st.Y}
+		r, _ := cs[i].eval(e, &s)
+		res = math.Max(res, math.Abs(r)*e.tRef/s.T)
+	}
+	solids := []gibbs.State{cs[0].state(), cs[1].state(), cs[2].state()}
+	sort.SliceStable(solids, func(i, j int) bool {
+		a, b := &solids[i], &solids[j]
+		if a.Phase != b.Phase {
+			return uint(a.Phase) < uint(b.Phase) // a second liquid comes last
+		}
+		return a.Y[0] > b.Y[0]
+	})
+	if solids[1].Phase == gibbs.Liquid {
+		e.problem(fmt.Sprintf("three liquids coexist at %s: such fields are not computed", e.place(s.x)))
+		return 0, false
+	}
 	for n := range e.nodes {
 		nd := &e.nodes[n]
-		if nd.Edge >= 0 || len(nd.Solids) != 3 || nd.Liquid.Distance(s.x) > nodeSame {
-			continue
-		}
-		if nd.Solids[0].Phase == solids[0].Phase && nd.Solids[1].Phase == solids[1].Phase && nd.Solids[2].Phase == solids[2].Phase {
+		if nd.Edge < 0 && nd.Liquid.Distance(s.x) < nodeSame && sameStates(nd.Solids, solids) {
 			return n, true
 		}
 	}
 	for i, q := range e.sys.Solids {
-		if i == solids[0].Phase || i == solids[1].Phase || i == solids[2].Phase {
+		if i == cs[0].phase || i == cs[1].phase || i == cs[2].phase {
 			continue
 		}
 		if q.Drive(&s.pot.Mu, s.T).D/e.rtRef > zeroDrive {
@@ -324,22 +390,42 @@ func (e *engine) invariant(p tracePoint, third int) (int, bool) {
 			return 0, false
 		}
 	}
-	res := math.Max(math.Abs(ra), math.Max(math.Abs(rb), math.Abs(c.last.D/e.rtRef))) * e.tRef / s.T
 	n := e.addNode(Node{Edge: -1, Liquid: s.x, T: s.T, Solids: solids, Residual: res})
-	e.pending = append(e.pending,
-		departure{n, port{solids[0].Phase, solids[1].Phase}},
-		departure{n, port{solids[0].Phase, solids[2].Phase}},
-		departure{n, port{solids[1].Phase, solids[2].Phase}})
+	e.depart(n)
+	if solids[2].Phase == gibbs.Liquid {
+		e.depart(e.conjugateNode(n))
+	}
 	return n, true
+}
+
+// depart puts all curves of an invariant point on the list.
+func (e *engine) depart(n int) {
+	e.pending = append(e.pending, departure{n, port{0, 1}}, departure{n, port{0, 2}}, departure{n, port{1, 2}})
+}
+
+func sameStates(a, b []gibbs.State) bool {
+	if len(a) != len(b) {
+		return false
+	}
+	for i := range a {
+		if a[i].Phase != b[i].Phase {
+			return false
+		}
+		for k := range a[i].Y {
+			if math.Abs(a[i].Y[k]-b[i].Y[k]) > 1e-4 {
+				return false
+			}
+		}
+	}
+	return true
 }
 
 // known reports whether z lies on a curve of solids a and b that has already
 // been followed.
 func (e *engine) known(a, b int, z vec) bool {
-	p := makePort(a, b)
 	for i := range e.raw {
 		c := &e.raw[i]
-		if c.a != p.a || c.b != p.b {
+		if (c.a != a || c.b != b) && (c.a != b || c.b != a) {
 			continue
 		}
 		for n := 1; n < len(c.points); n++ {

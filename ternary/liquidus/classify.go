@@ -32,6 +32,9 @@ func coefficients(x ternary.Composition, t [3]float64, ca, cb [3]float64) (a, b 
 // kindOf tells a cotectic from a reaction curve at a point where the liquid
 // moves along t on cooling; consumed is the solid that dissolves, or -1.
 func kindOf(x ternary.Composition, t [3]float64, sa, sb gibbs.State) (k CurveKind, consumed int) {
+	if sb.Phase == gibbs.Liquid {
+		return TwoLiquids, -1
+	}
 	if parallel(sa.C, sb.C) {
 		return Polymorph, -1
 	}

@@ -36,7 +36,6 @@ type engine struct {
 	edges    [3]*edge
 	mesh     *mesh
 	problems []string
-	unmixed  []ternary.Composition
 	pending  []departure
 }
 
@@ -63,6 +62,7 @@ func Compute(sys *gibbs.System, o Options) (*Projection, error) {
 		e.edges[k] = e.scanEdge(k)
 	}
 	e.mesh = e.newMesh(o.Mesh)
+	e.spreadSplits()
 	e.followEdges()
 	e.followPending()
 	e.explainMesh()
@@ -136,7 +136,12 @@ func (e *engine) problem(text string) {
 	e.problems = append(e.problems, text)
 }
 
-func (e *engine) symbol(phase int) string { return e.sys.Solids[phase].Symbol }
+func (e *engine) symbol(phase int) string {
+	if phase == gibbs.Liquid {
+		return "a second liquid"
+	}
+	return e.sys.Solids[phase].Symbol
+}
 
 // place writes a composition for a message.
 func (e *engine) place(x ternary.Composition) string {

@@ -17,10 +17,11 @@ const (
 	newtonReach = 0.3
 )
 
-// constraint is one equation along a curve: the driving force of a solid is
-// zero, or (phase < -1) T is constant.
+// constraint is one equation along a curve: the driving force of a solid, or of a
+// second liquid, is zero, or T is constant. For a phase that can unmix, y
+// says which of its compositions is meant.
 type constraint struct {
-	phase int // index in System.Solids; isothermal for the condition T = t
+	phase int // index in System.Solids, gibbs.Liquid, or isothermal for T = t
 	y     [3]float64
 	t     float64
 	last  gibbs.Drive
@@ -33,11 +34,19 @@ func (c *constraint) eval(e *engine, s *site) (float64, vec) {
 	if c.phase == isothermal {
 		return s.z[2] - c.t/e.tRef, vec{0, 0, 1}
 	}
-	p := e.sys.Solids[c.phase]
+	p := e.phaseOf(c.phase)
 	c.last = p.DriveFrom(&s.pot.Mu, s.T, c.y)
 	c.y = c.last.Y
 	k := 1 / e.rtRef
 	return c.last.D * k, s.gradient(e, &c.last.C, c.last.S).scaled(k)
+}
+
+// phaseOf is the phase of an index in System.Solids or gibbs.Liquid.
+func (e *engine) phaseOf(i int) *gibbs.Phase {
+	if i == gibbs.Liquid {
+		return e.sys.Liquid
+	}
+	return e.sys.Solids[i]
 }
 
 // state is the solid of the constraint at the last evaluation.
@@ -207,7 +216,7 @@ func (c *constraint) along(e *engine, s *site, dx ternary.Composition) (f, fs, f
 	if c.phase == isothermal {
 		return (s.T - c.t) / e.tRef, 0, 1 / e.tRef
 	}
-	p := e.sys.Solids[c.phase]
+	p := e.phaseOf(c.phase)
 	c.last = p.DriveFrom(&s.pot.Mu, s.T, c.y)
 	c.y = c.last.Y
 	k := 1 / e.rtRef

@@ -14,10 +14,8 @@ const edgeSamples = 40
 
 // edgeSample is one liquid on an edge.
 type edgeSample struct {
-	at      float64 // fraction of the way from the first to the second component
-	primary int
-	T       float64
-	all     []saturated
+	at float64 // fraction of the way from the first to the second component
+	surface
 }
 
 // edge is a binary system: component k is absent, the liquid goes from
@@ -56,28 +54,30 @@ func (e *engine) scanEdge(k int) *edge {
 		copy(all, hints)
 		s := e.surface(onLine(x0, dx, at), all)
 		copy(hints, all)
-		ed.samples = append(ed.samples, edgeSample{at: at, primary: s.primary, T: s.T, all: all})
+		ed.samples = append(ed.samples, edgeSample{at, s})
 	}
 	ed.samples = e.hiddenOnEdge(ed, x0, dx)
 	for n := 1; n < len(ed.samples); n++ {
 		e.splitEdge(ed, x0, dx, ed.samples[n-1], ed.samples[n], 0)
 	}
-	e.findStops(ed, x0, dx)
 	return ed
 }
 
 // findStops merges samples, nodes, the peaks of solids whose composition lies on
 // the edge, and extrema of solid solutions between samples.
-func (e *engine) findStops(ed *edge, x0, dx ternary.Composition) {
+func (e *engine) findStops(ed *edge, nodes []Node) {
+	x0, dx := edgeLine((ed.k+1)%3, (ed.k+2)%3)
 	for i := range ed.samples {
 		s := &ed.samples[i]
 		if !ed.nodeAt(s.at) {
-			ed.stops = append(ed.stops, stop{s.at, s.T, s.primary, s.primary})
+			c := e.code(&s.surface)
+			ed.stops = append(ed.stops, stop{s.at, s.T, c, c})
 		}
 	}
 	add := func(at float64) {
 		if s := e.surface(onLine(x0, dx, at), nil); s.primary >= 0 {
-			ed.stops = append(ed.stops, stop{at, s.T, s.primary, s.primary})
+			c := e.code(&s)
+			ed.stops = append(ed.stops, stop{at, s.T, c, c})
 		}
 	}
 	j := (ed.k + 2) % 3
@@ -96,15 +96,17 @@ func (e *engine) findStops(ed *edge, x0, dx ternary.Composition) {
 		}
 	}
 	for n, k := range ed.nodes {
-		nd := &e.nodes[k]
-		left := nd.Solids[0].Phase
-		if s := e.surface(onLine(x0, dx, ed.at[n]-1e-7), nil); s.primary >= 0 {
-			left = s.primary
-		}
-		right := nd.Solids[0].Phase + nd.Solids[1].Phase - left
+		nd := &nodes[k]
+		left, right := e.beside(onLine(x0, dx, ed.at[n]-1e-7)), e.beside(onLine(x0, dx, ed.at[n]+1e-7))
 		ed.stops = append(ed.stops, stop{ed.at[n], nd.T, left, right})
 	}
 	sort.SliceStable(ed.stops, func(i, j int) bool { return ed.stops[i].at < ed.stops[j].at })
+}
+
+// beside is the region mark of a liquid.
+func (e *engine) beside(x ternary.Composition) int {
+	s := e.surface(x, nil)
+	return e.code(&s)
 }
 
 // nodeAt reports whether a node stands at a position: a sample there would have
@@ -176,10 +178,10 @@ func (e *engine) edgePeak(p int, x0, dx ternary.Composition, a, b edgeSample) (e
 		su := e.surface(onLine(x0, dx, u), append([]saturated(nil), a.all...))
 		sv := e.surface(onLine(x0, dx, v), append([]saturated(nil), b.all...))
 		if su.primary == p {
-			return edgeSample{u, su.primary, su.T, su.all}, true
+			return edgeSample{u, su}, true
 		}
 		if sv.primary == p {
-			return edgeSample{v, sv.primary, sv.T, sv.all}, true
+			return edgeSample{v, sv}, true
 		}
 		if su.all[p].T-su.T > sv.all[p].T-sv.T {
 			hi = v
@@ -192,7 +194,7 @@ func (e *engine) edgePeak(p int, x0, dx ternary.Composition, a, b edgeSample) (e
 
 // splitEdge finds the nodes between two neighbouring samples.
 func (e *engine) splitEdge(ed *edge, x0, dx ternary.Composition, a, b edgeSample, depth int) {
-	if a.primary == b.primary || a.primary < 0 || b.primary < 0 {
+	if a.primary < 0 || b.primary < 0 || e.code(&a.surface) == e.code(&b.surface) && !e.creased(&a.surface, &b.surface, onLine(x0, dx, b.at)) {
 		return
 	}
 	if math.IsInf(a.T, 1) || math.IsInf(b.T, 1) {
@@ -204,27 +206,69 @@ func (e *engine) splitEdge(ed *edge, x0, dx ternary.Composition, a, b edgeSample
 	}
 	mid := (a.at + b.at) / 2
 	T := math.Min(a.T, b.T)
-	ca := constraint{phase: a.primary, y: b.all[a.primary].Y}
-	cb := constraint{phase: b.primary, y: a.all[b.primary].Y}
-	if ca.y == ([3]float64{}) {
-		ca.y = a.all[a.primary].Y
-	}
-	if cb.y == ([3]float64{}) {
-		cb.y = b.all[b.primary].Y
-	}
+	ca, cb := e.between(&a.surface, &b.surface)
 	if depth > 1 { // close enough for Newton's method
 		var s site
 		if at, ok := e.solveOnLine(&s, &ca, &cb, x0, dx, mid, T); ok && at >= a.at-1e-12 && at <= b.at+1e-12 {
-			if w, _ := e.worst(&s, a.primary, b.primary); w <= zeroDrive {
+			if w, _ := e.worst(&s, ca.phase, cb.phase); w <= zeroDrive && e.distinct(&s, &ca, &cb) {
 				e.addEdgeNode(ed, at, &s, &ca, &cb)
 				return
 			}
 		}
 	}
 	sm := e.surface(onLine(x0, dx, mid), append([]saturated(nil), a.all...))
-	m := edgeSample{mid, sm.primary, sm.T, sm.all}
+	m := edgeSample{mid, sm}
 	e.splitEdge(ed, x0, dx, a, m, depth+1)
 	e.splitEdge(ed, x0, dx, m, b, depth+1)
+}
+
+// between returns the two conditions that hold at the boundary between two
+// regions: two solids, a solid and a second liquid, or two forms of one solid.
+func (e *engine) between(a, b *surface) (ca, cb constraint) {
+	if b.split {
+		a, b = b, a
+	}
+	if a.split { // b is not: its solid and the liquid that a separates towards
+		return constraint{phase: b.primary, y: b.all[b.primary].Y}, constraint{phase: gibbs.Liquid, y: a.other}
+	}
+	return constraint{phase: a.primary, y: a.all[a.primary].Y}, constraint{phase: b.primary, y: b.all[b.primary].Y}
+}
+
+// distinct reports that a solution has not collapsed: the second liquid is not
+// the liquid itself, two forms of one solid differ, and each is stable against
+// its neighbours.
+func (e *engine) distinct(s *site, a, b *constraint) bool {
+	if b.phase == gibbs.Liquid {
+		return !sameForm(b.y, s.x) && e.convex(gibbs.Liquid, s.x, s.T) && e.convex(gibbs.Liquid, b.y, s.T)
+	}
+	if a.phase != b.phase {
+		return true
+	}
+	return !sameForm(a.y, b.y) && e.convex(a.phase, a.y, s.T) && e.convex(b.phase, b.y, s.T)
+}
+
+// convex reports that a phase is stable at y against unmixing into neighbours; a
+// phase that lacks an end-member there is judged without it.
+func (e *engine) convex(phase int, y [3]float64, T float64) bool {
+	_, _, ok := e.phaseOf(phase).Curvature(y, T)
+	return ok
+}
+
+// creased reports that two liquids with one primary solid meet different forms
+// of it: b's form is not the one that a's form turns into there.
+func (e *engine) creased(a, b *surface, x ternary.Composition) bool {
+	p := a.primary
+	if p < 0 || p != b.primary || a.split || b.split || math.IsInf(b.T, 0) || !e.sys.Solids[p].CanUnmix(b.T) {
+		return false
+	}
+	c := e.column(x)
+	mu := c.at(b.T)
+	q := e.sys.Solids[p].DriveFrom(&mu, b.T, a.all[p].Y)
+	d := 0.0
+	for k := range q.Y {
+		d += math.Abs(q.Y[k] - b.all[p].Y[k])
+	}
+	return d > 1e-3
 }
 
 // worst is the largest driving force, in R·tRef, of the solids other than a and
@@ -250,7 +294,7 @@ func (e *engine) addEdgeNode(ed *edge, at float64, s *site, a, b *constraint) {
 		Solids: []gibbs.State{a.state(), b.state()},
 	}
 	n.Residual = math.Max(math.Abs(a.last.D), math.Abs(b.last.D)) / (ternary.R * s.T)
-	if n.Solids[0].Phase > n.Solids[1].Phase {
+	if b.phase != gibbs.Liquid && n.Solids[0].Phase > n.Solids[1].Phase {
 		n.Solids[0], n.Solids[1] = n.Solids[1], n.Solids[0]
 	}
 	ed.nodes = append(ed.nodes, e.addNode(n))

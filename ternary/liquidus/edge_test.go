@@ -11,7 +11,7 @@ import (
 )
 
 const (
-	edgeScan = 150  // intervals of the test's own scan of an edge
+	edgeScan = 100  // intervals of the test's own scan of an edge
 	edgeTol  = 1e-6 // mole fraction, to which the test's own bisection agrees
 )
 

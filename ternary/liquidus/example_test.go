@@ -22,7 +22,7 @@ func ExampleCompute() {
 	}
 	fmt.Println("whole:", p.Checks.Passed)
 	// Output:
-	// E1 eutectic 651.5 K, x = [0.399 0.314 0.287]
+	// E1 eutectic 678.4 K, x = [0.456 0.320 0.224]
 	// e1 eutectic 812.3 K, x = [0.000 0.573 0.427]
 	// e2 eutectic 764.3 K, x = [0.652 0.000 0.348]
 	// e3 eutectic 734.3 K, x = [0.581 0.419 0.000]
@@ -61,6 +61,6 @@ func ExampleSurface_Liquidus() {
 		fmt.Printf("%.1f: %.1f K, solid %d\n", x, T, solid.Phase)
 	}
 	// Output:
-	// [0.7 0.2 0.1]: 1318.7 K, solid 0
-	// [0.5 0.3 0.2]: 1136.4 K, solid 3
+	// [0.7 0.2 0.1]: 1306.3 K, solid 0
+	// [0.5 0.3 0.2]: 1177.9 K, solid 3
 }

@@ -36,7 +36,11 @@ func (e *engine) buildFields(p *Projection) {
 			e.problem(err.Error())
 			continue
 		}
-		p.Fields = append(p.Fields, Field{Solid: solid, Outline: toCompositions(c.points)})
+		f := Field{Solid: solid, Outline: toCompositions(c.points)}
+		if n := len(e.sys.Solids); solid >= n {
+			f.Solid, f.TwoLiquids = solid-n, true
+		}
+		p.Fields = append(p.Fields, f)
 	}
 	e.placeHoles(p, g, cycles, faces)
 	e.checkFields(p)
@@ -67,12 +71,19 @@ func (e *engine) placeHoles(p *Projection, g *graph, cycles []cycle, faces []*cy
 				best, area = f, face.area
 			}
 		}
-		if best < 0 || p.Fields[best].Solid != solid {
+		if best < 0 || e.fieldLabel(&p.Fields[best]) != solid {
 			e.problem(fmt.Sprintf("an island in the field of %s does not lie in that field", g.name(solid)))
 			continue
 		}
 		p.Fields[best].Holes = append(p.Fields[best].Holes, toCompositions(c.points))
 	}
+}
+
+func (e *engine) fieldLabel(f *Field) int {
+	if f.TwoLiquids {
+		return e.twoLiquidLabel(f.Solid)
+	}
+	return f.Solid
 }
 
 func toCompositions(pts []vec) []ternary.Composition {
@@ -104,15 +115,24 @@ func (e *engine) checkFields(p *Projection) {
 		e.problem(fmt.Sprintf("the fields cover %.9f of the triangle", sum))
 	}
 	seen := make([]bool, len(e.sys.Solids))
+	split := false
 	for i := range p.Fields {
-		if p.Fields[i].Solid >= 0 {
-			seen[p.Fields[i].Solid] = true
+		if f := &p.Fields[i]; f.Solid >= 0 && !f.TwoLiquids {
+			seen[f.Solid] = true
+		} else if f.TwoLiquids {
+			split = true
 		}
 	}
 	m := e.mesh
 	for i := 0; i <= m.n; i++ {
 		for j := 0; i+j <= m.n; j++ {
 			s := m.nodes[m.index(i, j)].primary
+			if m.nodes[m.index(i, j)].split {
+				if !split && !e.nearCritical(m.composition(i, j)) {
+					p.Unmixed = append(p.Unmixed, m.composition(i, j))
+				}
+				continue
+			}
 			if s < 0 {
 				e.problem(fmt.Sprintf("nothing crystallises from the liquid at %s", e.place(m.composition(i, j))))
 			} else if !seen[s] {
@@ -120,6 +140,9 @@ func (e *engine) checkFields(p *Projection) {
 				seen[s] = true
 			}
 		}
+	}
+	if n := len(p.Unmixed); n > 0 {
+		e.problem(fmt.Sprintf("the liquid separates into two at %d nodes of the mesh, first at %s, but no two-liquid field was found", n, e.place(p.Unmixed[0])))
 	}
 }
 
@@ -183,6 +206,15 @@ func toVecs(ring []ternary.Composition) []vec {
 func (e *engine) findPeak(f *Field) {
 	f.PeakT = math.Inf(-1)
 	if f.Solid < 0 {
+		return
+	}
+	if f.TwoLiquids { // its temperatures are those of its rim
+		for _, x := range f.Outline {
+			c := e.column(x)
+			if s := e.saturation(f.Solid, &c, saturated{}); s.T > f.PeakT {
+				f.Peak, f.PeakT = x, s.T
+			}
+		}
 		return
 	}
 	sol := e.sys.Solids[f.Solid]

@@ -6,6 +6,7 @@ import (
 	"sort"
 
 	"thalweg/ternary"
+	"thalweg/ternary/gibbs"
 )
 
 // The projection is a planar graph: its vertices are the apexes of the
@@ -77,31 +78,73 @@ func (e *engine) newGraph(p *Projection) *graph {
 		g.arcs = append(g.arcs, a)
 	}
 	for k := range e.edges {
-		g.addSide(e.edges[k])
+		g.addSide(p, e.edges[k])
+	}
+	for n := range p.Nodes {
+		if c := p.Nodes[n].Conjugate; c > n && p.Nodes[n].Edge < 0 {
+			g.addTieLine(p, n, c)
+		}
 	}
 	g.sortOutgoing()
 	return g
 }
 
 // addSide adds the stretches of one side of the triangle, inside on the left.
-func (g *graph) addSide(ed *edge) {
+func (g *graph) addSide(p *Projection, ed *edge) {
 	i, j := (ed.k+1)%3, (ed.k+2)%3
 	order := make([]int, len(ed.nodes))
 	for n := range order {
 		order[n] = n
 	}
 	sort.Slice(order, func(a, b int) bool { return ed.at[order[a]] < ed.at[order[b]] })
-	at, v := 0.0, i
+	at, v, last := 0.0, i, -1
 	add := func(to int, end float64) {
 		x0, dx := edgeLine(i, j)
-		s := g.e.surface(onLine(x0, dx, (at+end)/2), nil)
-		g.arcs = append(g.arcs, arc{from: v, to: to, points: []vec{g.at[v], g.at[to]}, left: s.primary, right: -1, curve: -1})
+		left := g.e.beside(onLine(x0, dx, (at+end)/2))
+		if left == g.e.splitCode() && v >= 3 {
+			left = g.e.twoLiquidLabel(p.Nodes[ed.nodes[last]].Solids[0].Phase)
+		}
+		g.arcs = append(g.arcs, arc{from: v, to: to, points: []vec{g.at[v], g.at[to]}, left: left, right: -1, curve: -1})
 		at, v = end, to
 	}
 	for _, n := range order {
 		add(3+ed.nodes[n], ed.at[n])
+		last = n
 	}
 	add(j, 1)
+}
+
+// twoLiquidLabel marks faces in which two liquids meet a solid; labels of other
+// faces are the solids themselves.
+func (e *engine) twoLiquidLabel(solid int) int { return len(e.sys.Solids) + solid }
+
+// addTieLine joins the two liquids of an invariant point: it divides the
+// two-liquid field of one solid from that of the other.
+func (g *graph) addTieLine(p *Projection, n, c int) {
+	a, b := &p.Nodes[n], &p.Nodes[c]
+	arc := arc{from: 3 + n, to: 3 + c, points: []vec{g.at[3+n], g.at[3+c]}, curve: -1, left: -2, right: -2}
+	dir := g.at[3+c].minus(g.at[3+n])
+	for i := range p.Curves {
+		k := &p.Curves[i]
+		if k.Solids[1] != gibbs.Liquid || k.From != n && k.To != n {
+			continue
+		}
+		next := k.Points[1].Liquid
+		if k.To == n {
+			next = k.Points[len(k.Points)-2].Liquid
+		}
+		x, y := next.XY()
+		label := g.e.twoLiquidLabel(k.Solids[0])
+		if d := (vec{x, y}).minus(g.at[3+n]); dir[0]*d[1]-dir[1]*d[0] > 0 {
+			arc.left = label
+		} else {
+			arc.right = label
+		}
+	}
+	if arc.left < 0 || arc.right < 0 {
+		g.e.problem(fmt.Sprintf("the two-liquid fields on either side of the tie line from %s to %s are not known", a.ID, b.ID))
+	}
+	g.arcs = append(g.arcs, arc)
 }
 
 // smoothPoints is the curve's course with two points of the cubic between each
@@ -132,6 +175,9 @@ func smoothPoints(c *Curve) []vec {
 func (e *engine) sides(c *Curve) (left, right int) {
 	n := len(c.Points) / 2
 	p, q := &c.Points[n-1], &c.Points[n]
+	if c.Solids[1] == gibbs.Liquid {
+		return e.monotecticSides(c, p, q)
+	}
 	var y, z vec
 	y[0], y[1] = p.Liquid.XY()
 	z[0], z[1] = q.Liquid.XY()
@@ -154,6 +200,18 @@ func (e *engine) sides(c *Curve) (left, right int) {
 		return c.Solids[0], c.Solids[1]
 	}
 	return c.Solids[1], c.Solids[0]
+}
+
+// monotecticSides: the two-liquid field is on the side of the second liquid.
+func (e *engine) monotecticSides(c *Curve, p, q *Point) (left, right int) {
+	ax, ay := p.Liquid.XY()
+	bx, by := q.Liquid.XY()
+	cx, cy := ternary.Composition(p.Solids[1].C).Lerp(ternary.Composition(q.Solids[1].C), 0.5).XY()
+	two := e.twoLiquidLabel(c.Solids[0])
+	if (bx-ax)*(cy-ay)-(by-ay)*(cx-ax) > 0 {
+		return two, c.Solids[0]
+	}
+	return c.Solids[0], two
 }
 
 // direction is the angle at which a half-edge leaves its vertex.
@@ -286,8 +344,11 @@ func (g *graph) label(c *cycle) (int, error) {
 }
 
 func (g *graph) name(solid int) string {
-	if solid < 0 {
+	switch n := len(g.e.sys.Solids); {
+	case solid < 0:
 		return "the outside"
+	case solid >= n:
+		return "two liquids with " + g.e.symbol(solid-n)
 	}
 	return g.e.symbol(solid)
 }

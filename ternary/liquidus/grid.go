@@ -54,23 +54,9 @@ func (e *engine) newMesh(n int) *mesh {
 			x := m.composition(i, j)
 			m.nodes[k] = e.surface(x, all)
 			copy(hints, all)
-			e.checkLiquid(x, m.nodes[k].T)
 		}
 	}
 	return m
-}
-
-// checkLiquid records a liquid on the liquidus that would rather be two.
-func (e *engine) checkLiquid(x ternary.Composition, T float64) {
-	l := e.sys.Liquid
-	if math.IsInf(T, 0) || !l.CanUnmix(T) {
-		return
-	}
-	c := e.column(x)
-	mu := c.at(T)
-	if l.Drive(&mu, T).D > 1e-9*ternary.R*T {
-		e.unmixed = append(e.unmixed, x)
-	}
 }
 
 // mark records which links of the mesh the points of a curve cross.
@@ -157,6 +143,16 @@ func (c *crossing) explains(a, b int) bool {
 	return false
 }
 
+// has reports whether a curve of solids a and b crosses the link.
+func (c *crossing) has(a, b int) bool {
+	for k := 0; k < c.count; k++ {
+		if c.pairs[k] == [2]int{a, b} {
+			return true
+		}
+	}
+	return false
+}
+
 // explainMesh looks at every link whose ends have different primary phases and
 // that no curve explains, finds the curve that crosses it, and follows it.
 func (e *engine) explainMesh() {
@@ -169,13 +165,15 @@ func (e *engine) explainMesh() {
 					continue
 				}
 				b := &m.nodes[m.index(i+l[0], j+l[1])]
-				if a.primary == b.primary || a.primary < 0 || b.primary < 0 {
+				if a.primary < 0 || b.primary < 0 {
 					continue
 				}
-				if m.crossed[d][m.index(i, j)].explains(a.primary, b.primary) {
-					continue
+				x, y := m.composition(i, j), m.composition(i+l[0], j+l[1])
+				c := &m.crossed[d][m.index(i, j)]
+				ca, cb := e.code(a), e.code(b)
+				if ca != cb && !c.explains(ca, cb) || ca == cb && e.creased(a, b, y) && !c.has(ca, ca) {
+					e.explainLink(x, y, *a, *b, 0)
 				}
-				e.explainLink(m.composition(i, j), m.composition(i+l[0], j+l[1]), *a, *b, 0)
 			}
 		}
 	}
@@ -184,7 +182,7 @@ func (e *engine) explainMesh() {
 // explainLink follows the curves between two liquids with different primary
 // phases, unless they are already known.
 func (e *engine) explainLink(x, y ternary.Composition, a, b surface, depth int) {
-	if a.primary == b.primary || a.primary < 0 || b.primary < 0 {
+	if a.primary < 0 || b.primary < 0 || e.code(&a) == e.code(&b) && !e.creased(&a, &b, y) {
 		return
 	}
 	if math.IsInf(a.T, 1) && math.IsInf(b.T, 1) {
@@ -194,15 +192,17 @@ func (e *engine) explainLink(x, y ternary.Composition, a, b surface, depth int) 
 		e.problem(fmt.Sprintf("the boundary between %s and %s could not be found near %s", e.symbol(a.primary), e.symbol(b.primary), e.place(x)))
 		return
 	}
+	if e.nearCritical(x) {
+		return // too close to a critical point to tell the regions apart
+	}
 	if depth > 2 {
 		var s site
 		dx := ternary.Composition{y[0] - x[0], y[1] - x[1], y[2] - x[2]}
-		ca := constraint{phase: a.primary, y: a.all[a.primary].Y}
-		cb := constraint{phase: b.primary, y: b.all[b.primary].Y}
+		ca, cb := e.between(&a, &b)
 		at, ok := e.solveOnLine(&s, &ca, &cb, x, dx, 0.5, math.Min(a.T, b.T))
-		if ok && at >= -1e-9 && at <= 1+1e-9 {
-			if w, _ := e.worst(&s, a.primary, b.primary); w <= zeroDrive {
-				if !e.known(a.primary, b.primary, s.z) {
+		if ok && at >= -1e-9 && at <= 1+1e-9 && e.distinct(&s, &ca, &cb) {
+			if w, _ := e.worst(&s, ca.phase, cb.phase); w <= zeroDrive {
+				if !e.known(ca.phase, cb.phase, s.z) {
 					e.followSeed(&s, ca, cb)
 					e.followPending()
 				}
@@ -212,8 +212,24 @@ func (e *engine) explainLink(x, y ternary.Composition, a, b surface, depth int) 
 	}
 	mid := x.Lerp(y, 0.5)
 	c := e.surface(mid, append([]saturated(nil), a.all...))
+	if !e.inherit(&c, mid, &a) {
+		e.inherit(&c, mid, &b)
+	}
 	e.explainLink(x, mid, a, c, depth+1)
 	e.explainLink(mid, y, c, b, depth+1)
+}
+
+// criticalNear is the distance from a critical point, in triangle sides, within
+// which the rim of its field is drawn but not resolved.
+const criticalNear = 1.5 * tieCritical
+
+func (e *engine) nearCritical(x ternary.Composition) bool {
+	for i := range e.nodes {
+		if e.nodes[i].Kind == Critical && e.nodes[i].Liquid.Distance(x) < criticalNear {
+			return true
+		}
+	}
+	return false
 }
 
 // findIslands looks for fields smaller than the mesh: for every solid, local

@@ -22,7 +22,7 @@ type subject struct {
 // detailedSeeds are random systems looked at in detail: among them are every
 // extension, ternary terms, binary and ternary solid solutions, two forms of one
 // substance and compounds inside the triangle (TestSubjectsVary).
-var detailedSeeds = []int64{2, 3, 6, 8, 14, 19, 25, 46, 49}
+var detailedSeeds = []int64{3, 6, 8, 14, 25, 49}
 
 // subjects are the built-in systems, the hand-made cases whose edges are
 // binary systems and the detailed seeds.

@@ -77,6 +77,30 @@ func TestIdealEutectics(t *testing.T) {
 	}
 }
 
+// The same in numbers worked out once by hand from the same inputs, so that a slip
+// in the closed form above would show.
+func TestIdealByHand(t *testing.T) {
+	want := map[int]struct {
+		C float64 // °C
+		x ternary.Composition
+	}{
+		-1: {18.86, ternary.Composition{0.343, 0.396, 0.261}},
+		0:  {33.70, ternary.Composition{0, 0.620, 0.380}},
+		1:  {39.89, ternary.Composition{0.560, 0, 0.440}},
+		2:  {29.80, ternary.Composition{0.447, 0.553, 0}},
+	}
+	for _, n := range whole(t, trial.Ideal(leeWarnerT, leeWarnerH), liquidus.Options{}).Nodes {
+		w, ok := want[n.Edge]
+		if !ok || math.Abs(n.T-273.15-w.C) > 0.01 || n.Liquid.Distance(w.x) > 1.5e-3 {
+			t.Errorf("%s: %.2f °C at %.3f, want %.2f at %.3f", n.ID, n.T-273.15, n.Liquid, w.C, w.x)
+		}
+		delete(want, n.Edge)
+	}
+	if len(want) > 0 {
+		t.Errorf("not found: %v", want)
+	}
+}
+
 // Naphthalene–biphenyl is close to ideal: the computed eutectic against the
 // measured one, 312.8 ± 0.1 K at x(naphthalene) = 0.445 ± 0.001 (Lee & Warner
 // 1935, as evaluated in the IUPAC–NIST Solubility Database, SRD 106), and against

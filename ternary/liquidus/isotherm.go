@@ -5,6 +5,7 @@ import (
 	"math"
 
 	"thalweg/ternary"
+	"thalweg/ternary/gibbs"
 )
 
 // crossingPoint is where an isotherm meets a boundary curve or an edge.
@@ -30,7 +31,7 @@ func (e *engine) isotherm(p *Projection, T float64) Isotherm {
 	}
 	for i := range cs {
 		sides := 2
-		if cs[i].edge >= 0 {
+		if cs[i].edge >= 0 || cs[i].solid[1] == gibbs.Liquid {
 			sides = 1
 		}
 		for side := 0; side < sides; side++ {
@@ -46,6 +47,7 @@ func (e *engine) isotherm(p *Projection, T float64) Isotherm {
 			iso.Lines = append(iso.Lines, IsothermLine{Solid: cs[i].solid[side], Points: e.line(pts)})
 		}
 	}
+	iso.Lines = append(iso.Lines, e.tieLines(cs)...)
 	for i := range p.Fields {
 		if pts, ok := e.closedIsotherm(&p.Fields[i], T, iso.Lines); ok {
 			iso.Lines = append(iso.Lines, IsothermLine{Solid: p.Fields[i].Solid, Points: e.line(pts), Closed: true})
@@ -76,7 +78,7 @@ func (e *engine) curveCrossings(p *Projection, T float64) []crossingPoint {
 	for i := range p.Curves {
 		c := &p.Curves[i]
 		n := len(c.Points)
-		if !(c.Points[0].T > T && c.Points[n-1].T <= T) || e.samePlace(c.Solids[0], c.Solids[1]) {
+		if !(c.Points[0].T > T && c.Points[n-1].T <= T) || c.Solids[1] >= 0 && e.samePlace(c.Solids[0], c.Solids[1]) {
 			continue
 		}
 		k := 1
@@ -112,7 +114,7 @@ func (e *engine) edgeCrossings(ed *edge, T float64) []crossingPoint {
 	x0, dx := edgeLine((ed.k+1)%3, (ed.k+2)%3)
 	for n := 1; n < len(ed.stops); n++ {
 		a, b := &ed.stops[n-1], &ed.stops[n]
-		if a.after != b.before || (a.T > T) == (b.T > T) || a.after < 0 {
+		if a.after != b.before || (a.T > T) == (b.T > T) || a.after < 0 || a.after == e.splitCode() {
 			continue
 		}
 		at, sol := e.edgeCrossing(a, b, x0, dx, T)
@@ -231,10 +233,28 @@ func (e *engine) matchEnd(tr traced, solid int, cs []crossingPoint) bool {
 	return false
 }
 
+// tieLines are the isotherm's straight pieces across two-liquid fields, between
+// its crossings with the two sides of a monotectic curve.
+func (e *engine) tieLines(cs []crossingPoint) []IsothermLine {
+	var out []IsothermLine
+	for i := range cs {
+		c := &cs[i]
+		if c.curve < 0 || c.solid[1] != gibbs.Liquid {
+			continue
+		}
+		o := ternary.Composition(c.y[1])
+		if c.x[0] < o[0] || c.x[0] == o[0] && c.x[1] < o[1] {
+			continue // drawn from the other side
+		}
+		out = append(out, IsothermLine{Solid: c.solid[0], Points: []ternary.Composition{c.x, o}, TieLine: true})
+	}
+	return out
+}
+
 // closedIsotherm traces the ring of T round the peak of a field, if there is one
 // and it is not among the lines already traced.
 func (e *engine) closedIsotherm(f *Field, T float64, lines []IsothermLine) ([]tracePoint, bool) {
-	if f.Solid < 0 || f.PeakT <= T || math.IsInf(f.PeakT, 0) || f.Peak[0] <= 0 || f.Peak[1] <= 0 || f.Peak[2] <= 0 || !f.contains(f.Peak) {
+	if f.TwoLiquids || f.Solid < 0 || f.PeakT <= T || math.IsInf(f.PeakT, 0) || f.Peak[0] <= 0 || f.Peak[1] <= 0 || f.Peak[2] <= 0 || !f.contains(f.Peak) {
 		return nil, false
 	}
 	// walk from the peak towards the nearest point of the outline

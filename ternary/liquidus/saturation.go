@@ -185,6 +185,17 @@ type surface struct {
 	primary int // index of the primary phase, or -1 when no solid ever saturates
 	T       float64
 	all     []saturated // by solid
+	split   bool        // the liquid separates into two before it crystallises
+	other   [3]float64  // towards this liquid
+}
+
+// code is the mark of the region to which the liquid belongs: its primary solid,
+// or splitCode.
+func (e *engine) code(s *surface) int {
+	if s.split {
+		return e.splitCode()
+	}
+	return s.primary
 }
 
 // surface evaluates all saturation temperatures at x. all is used as scratch
@@ -200,6 +211,10 @@ func (e *engine) surface(x ternary.Composition, all []saturated) surface {
 		if all[i].T > s.T {
 			s.T, s.primary = all[i].T, i
 		}
+	}
+	var q gibbs.Drive
+	if q, s.split = e.splits(x, s.T); s.split {
+		s.other = q.Y
 	}
 	return s
 }

@@ -23,7 +23,7 @@ var (
 type outcome struct {
 	seed     int64
 	solids   int
-	unmixed  bool // the liquid separates into two: outside the scope of a complete projection
+	split    bool // there is a two-liquid field, or liquids that separate in none
 	panicked string
 	problems []string
 	p        *liquidus.Projection
@@ -45,7 +45,10 @@ func try(seed int64, sys *gibbs.System, o liquidus.Options) (out outcome) {
 	}
 	out.p = p
 	out.problems = p.Checks.Problems
-	out.unmixed = len(p.Unmixed) > 0
+	out.split = len(p.Unmixed) > 0
+	for i := range p.Fields {
+		out.split = out.split || p.Fields[i].TwoLiquids
+	}
 	if p.Checks.Passed != (len(p.Checks.Problems) == 0) {
 		out.problems = append(out.problems, "Passed disagrees with Problems")
 	}
@@ -68,11 +71,12 @@ func reason(problem string, sys *gibbs.System) string {
 	return digits.ReplaceAllString(problem, "#")
 }
 
-// torture runs n seeds and returns the number complete, and of systems whose
-// liquid stays one.
-func torture(t *testing.T, first int64, n int, o trial.Options) (complete, single int) {
+// torture runs n seeds and returns the number complete, and that of systems with
+// two liquids somewhere.
+func torture(t *testing.T, first int64, n int, o trial.Options) (complete, split int) {
 	t.Helper()
 	reasons := map[string]int{}
+	splitComplete := 0
 	var lines []string
 	for seed := first; seed < first+int64(n); seed++ {
 		sys := trial.System(seed, o)
@@ -80,21 +84,18 @@ func torture(t *testing.T, first int64, n int, o trial.Options) (complete, singl
 		if out.panicked != "" {
 			t.Errorf("seed %d: panic: %s", seed, out.panicked)
 		}
-		if !out.unmixed {
-			single++
-			if len(out.problems) == 0 {
-				complete++
-			}
+		if out.split {
+			split++
 		}
 		if len(out.problems) == 0 {
+			complete++
+			if out.split {
+				splitComplete++
+			}
 			continue
 		}
-		key := reason(out.problems[0], sys)
-		if out.unmixed {
-			key = "(two liquids)"
-		}
-		reasons[key]++
-		lines = append(lines, fmt.Sprintf("seed %d, MaxSolids %d, %d solids, unmixed %v:\n    %s", seed, o.MaxSolids, out.solids, out.unmixed, strings.Join(out.problems, "\n    ")))
+		reasons[reason(out.problems[0], sys)]++
+		lines = append(lines, fmt.Sprintf("seed %d, %+v, %d solids, two liquids %v:\n    %s", seed, o, out.solids, out.split, strings.Join(out.problems, "\n    ")))
 	}
 	var keys []string
 	for k := range reasons {
@@ -103,14 +104,14 @@ func torture(t *testing.T, first int64, n int, o trial.Options) (complete, singl
 	sort.Slice(keys, func(i, j int) bool {
 		return reasons[keys[i]] > reasons[keys[j]] || reasons[keys[i]] == reasons[keys[j]] && keys[i] < keys[j]
 	})
-	summary := fmt.Sprintf("%d systems of seeds %d to %d: %d with one liquid, %d of them complete (%.2f %%)",
-		n, first, first+int64(n)-1, single, complete, 100*float64(complete)/float64(single))
+	summary := fmt.Sprintf("%d systems of seeds %d to %d, %+v: %d complete (%.2f %%); %d with two liquids, %d of them complete",
+		n, first, first+int64(n)-1, o, complete, 100*float64(complete)/float64(n), split, splitComplete)
 	for _, k := range keys {
 		summary += fmt.Sprintf("\n%5d  %s", reasons[k], k)
 	}
 	t.Log(summary)
 	writeReport(t, summary, lines)
-	return complete, single
+	return complete, split
 }
 
 func writeReport(t *testing.T, summary string, lines []string) {
@@ -127,17 +128,39 @@ func writeReport(t *testing.T, summary string, lines []string) {
 	}
 }
 
-// tortureShare is the share of random systems with one liquid that must come
-// out complete.
-const tortureShare = 0.97
+// tortureShare is the share of random systems that must come out complete;
+// tortureSplit the same where the liquid is made to separate.
+const (
+	tortureShare = 0.97
+	tortureSplit = 0.80
+)
 
 func TestTorture(t *testing.T) {
-	complete, single := torture(t, 1, 200, trial.Options{})
-	if single < 150 {
-		t.Errorf("only %d of 200 systems keep one liquid: the generator is too harsh", single)
+	const n = 200
+	complete, _ := torture(t, 1, n, trial.Options{})
+	if float64(complete) < tortureShare*n {
+		t.Errorf("%d of %d projections complete, want %.0f %%", complete, n, 100*tortureShare)
 	}
-	if float64(complete) < tortureShare*float64(single) {
-		t.Errorf("%d of %d projections complete, want %.0f %%", complete, single, 100*tortureShare)
+}
+
+// The same with compounds of any entropy: reactions that take up heat.
+func TestTortureHarsh(t *testing.T) {
+	const n = 100
+	complete, _ := torture(t, 1, n, trial.Options{Harsh: true})
+	if float64(complete) < tortureShare*n {
+		t.Errorf("%d of %d projections complete, want %.0f %%", complete, n, 100*tortureShare)
+	}
+}
+
+// The same with liquids that separate.
+func TestTortureTwoLiquids(t *testing.T) {
+	const n = 50
+	complete, split := torture(t, 1, n, trial.Options{Unmixing: true})
+	if split < n/2 {
+		t.Errorf("only %d of %d systems have two liquids", split, n)
+	}
+	if float64(complete) < tortureSplit*n {
+		t.Errorf("%d of %d projections complete, want %.0f %%", complete, n, 100*tortureSplit)
 	}
 }
 
@@ -145,10 +168,14 @@ func TestTortureLong(t *testing.T) {
 	if !*long {
 		t.Skip("run with -long")
 	}
-	complete, single := torture(t, 1001, 2000, trial.Options{MaxSolids: 12})
-	if float64(complete) < tortureShare*float64(single) {
-		t.Errorf("%d of %d projections complete, want %.0f %%", complete, single, 100*tortureShare)
+	for _, o := range []trial.Options{{MaxSolids: 12}, {MaxSolids: 12, Harsh: true}} {
+		const n = 2000
+		complete, _ := torture(t, 1001, n, o)
+		if float64(complete) < tortureShare*n {
+			t.Errorf("%d of %d projections complete, want %.0f %%", complete, n, 100*tortureShare)
+		}
 	}
+	torture(t, 1001, 500, trial.Options{Unmixing: true})
 }
 
 // Isotherms of random systems are whole: none is lost.

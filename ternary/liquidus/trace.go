@@ -23,18 +23,23 @@ const (
 	// zeroDrive is the driving force, in R·tRef, below which a phase counts as
 	// saturated: the residual of a solved point with room for rounding.
 	zeroDrive = 1e-10
+	// tieCritical is the length of a tie line, in end-member fractions, at which a
+	// curve is taken to its critical point by extrapolation: the error is of the
+	// order of its fourth power.
+	tieCritical = 0.02
 )
 
 // ending says how a traced curve ended.
 type ending int
 
 const (
-	endLost   ending = iota // continuation failed
-	endPhase                // a watched phase became saturated
-	endEdge                 // an edge of the triangle was reached
-	endClosed               // the curve came back to its start
-	endLimit                // the limit of temperature was reached
-	endApex                 // an apex of the triangle was reached
+	endLost     ending = iota // continuation failed
+	endPhase                  // a watched phase became saturated
+	endEdge                   // an edge of the triangle was reached
+	endClosed                 // the curve came back to its start
+	endLimit                  // the limit of temperature was reached
+	endApex                   // an apex of the triangle was reached
+	endCritical               // the two liquids, or two forms of a solid, became one
 )
 
 // tracePoint is one solved point of a curve.
@@ -42,7 +47,8 @@ type tracePoint struct {
 	x        ternary.Composition
 	z, t     vec // place and unit tangent in the direction of travel
 	a, b     gibbs.State
-	extremum bool // T is stationary here
+	c        gibbs.State // the third phase, at the end of a curve at an invariant point
+	extremum bool        // T is stationary here
 }
 
 func (p *tracePoint) place() place { return place{p.x, p.z[2]} }
@@ -51,15 +57,16 @@ func (p *tracePoint) place() place { return place{p.x, p.z[2]} }
 type traced struct {
 	points []tracePoint
 	end    ending
-	phase  int // endPhase: which solid
 	edge   int // endEdge: the component that vanished; endApex: the one that is left
 }
 
-// watch is the driving force of one solid along a curve, in R·tRef, with its
+// watch is the driving force of one phase along a curve, in R·tRef, with its
 // derivative along the tangent.
 type watch struct {
 	phase int
+	other bool // another composition of a phase that is active already
 	d, m  float64
+	y     [3]float64
 }
 
 // tracer follows one curve.
@@ -67,15 +74,18 @@ type tracer struct {
 	e        *engine
 	a, b     constraint
 	extrema  bool // look for extrema of T
+	merging  bool // a and b, or b and the liquid itself, can become one phase
 	s        site
 	now, old []watch
 }
 
 func newTracer(e *engine, a, b constraint) *tracer {
 	t := &tracer{e: e, a: a, b: b, extrema: b.phase != isothermal && !e.samePlace(a.phase, b.phase)}
-	for i := range e.sys.Solids {
-		if i != a.phase && i != b.phase {
-			t.now = append(t.now, watch{phase: i})
+	t.merging = b.phase == gibbs.Liquid || b.phase == a.phase
+	for i := gibbs.Liquid; i < len(e.sys.Solids); i++ {
+		active := i == a.phase || i == b.phase || i == gibbs.Liquid
+		if !active || e.phaseOf(i).ConvexAbove() > e.tLow {
+			t.now = append(t.now, watch{phase: i, other: active})
 		}
 	}
 	t.old = append([]watch(nil), t.now...)
@@ -87,14 +97,58 @@ func (t *tracer) look(dir vec) {
 	k := 1 / t.e.rtRef
 	for i := range t.now {
 		w := &t.now[i]
-		q := t.e.sys.Solids[w.phase].Drive(&t.s.pot.Mu, t.s.T)
-		w.d = q.D * k
+		var q gibbs.Drive
+		if w.other {
+			q = t.otherForm(w.phase)
+		} else {
+			q = t.e.sys.Solids[w.phase].Drive(&t.s.pot.Mu, t.s.T)
+		}
+		w.d, w.y = q.D*k, q.Y
 		if math.IsInf(w.d, -1) {
 			w.m = 0
 			continue
 		}
 		w.m = t.s.gradient(t.e, &q.C, q.S).dot(dir) * k
 	}
+}
+
+// formSame is the difference in end-member fraction within which two maxima of a
+// phase's driving force are one.
+const formSame = 1e-5
+
+// otherForm is the highest maximum of a phase's driving force besides those that
+// are active already; −Inf where there is none.
+func (t *tracer) otherForm(phase int) gibbs.Drive {
+	none := gibbs.Drive{D: math.Inf(-1)}
+	p := t.e.phaseOf(phase)
+	if !p.CanUnmix(t.s.T) {
+		return none
+	}
+	for _, q := range p.Maxima(&t.s.pot.Mu, t.s.T) {
+		if phase == gibbs.Liquid && sameForm(q.Y, t.s.x) ||
+			phase == t.a.phase && sameForm(q.Y, t.a.y) ||
+			phase == t.b.phase && sameForm(q.Y, t.b.y) {
+			continue
+		}
+		return q
+	}
+	return none
+}
+
+func sameForm(a, b [3]float64) bool {
+	return math.Abs(a[0]-b[0])+math.Abs(a[1]-b[1])+math.Abs(a[2]-b[2]) < formSame
+}
+
+// tieLength is how far apart the two forms are that can become one.
+func (t *tracer) tieLength() float64 {
+	if !t.merging {
+		return math.Inf(1)
+	}
+	u, v := t.a.y, t.b.y
+	if t.b.phase == gibbs.Liquid {
+		u = t.s.x
+	}
+	return math.Abs(u[0]-v[0]) + math.Abs(u[1]-v[1]) + math.Abs(u[2]-v[2])
 }
 
 // run follows the curve from a solved point in direction dir. A closable curve
@@ -138,7 +192,7 @@ func (t *tracer) run(from place, dir vec, closable bool) traced {
 			continue
 		}
 		if hit {
-			m, phase, ok := t.locate(&p, &q, a, b)
+			m, ok := t.locate(&p, &q, a, b)
 			if !ok {
 				t.now, t.old = t.old, t.now
 				h /= 2
@@ -148,7 +202,7 @@ func (t *tracer) run(from place, dir vec, closable bool) traced {
 				out.points = append(out.points, x)
 			}
 			out.points = append(out.points, m)
-			out.end, out.phase = endPhase, phase
+			out.end = endPhase
 			return out
 		}
 		if x, found := t.extremum(&p, &q, a, b); found {
@@ -166,11 +220,18 @@ func (t *tracer) run(from place, dir vec, closable bool) traced {
 			out.end, out.edge = endApex, k
 			return out
 		}
+		if tie := t.tieLength(); tie < tieCritical {
+			out.end = endCritical
+			return out
+		}
 		if p.z[2]*e.tRef > e.tCap {
 			out.end = endLimit
 			return out
 		}
 		h = math.Min(stepMax, h*math.Max(0.5, math.Min(2, turnAim/math.Max(turn, 1e-3))))
+		if t.merging {
+			h = math.Min(h, 0.2*t.tieLength())
+		}
 	}
 	out.end = endLost
 	return out
@@ -189,6 +250,9 @@ func (t *tracer) step(p *tracePoint, h float64) (q tracePoint, turn float64, ok 
 		return q, 0, false
 	}
 	turn = math.Acos(math.Max(-1, math.Min(1, dir.dot(p.t))))
+	if t.tieLength() < tieCritical/4 {
+		return q, turn, false // stepped past the critical point, or fell into the trivial solution
+	}
 	return t.point(dir), turn, turn <= turnMax
 }
 
@@ -244,6 +308,9 @@ func (t *tracer) land(from *tracePoint, f float64, k int) (tracePoint, bool) {
 		return tracePoint{}, false
 	}
 	for i := range t.now {
+		if t.now[i].other {
+			continue
+		}
 		q := e.sys.Solids[t.now[i].phase].Drive(&s.pot.Mu, s.T)
 		if q.D/e.rtRef > zeroDrive {
 			return tracePoint{}, false // another phase comes first
@@ -316,13 +383,13 @@ func hermiteRise(d0, d1, m0, m1 float64) float64 {
 
 // locate solves for the first point between p and q at which a watched phase is
 // saturated.
-func (t *tracer) locate(p, q *tracePoint, a, b constraint) (tracePoint, int, bool) {
+func (t *tracer) locate(p, q *tracePoint, a, b constraint) (tracePoint, bool) {
 	e := t.e
 	z0, z1 := p.z, q.z
 	h := z1.minus(z0).norm()
 	dir := z1.minus(z0).scaled(1 / h)
 	var found tracePoint
-	phase, best := -1, math.Inf(1)
+	best := math.Inf(1)
 	for i := range t.now {
 		if t.now[i].d <= zeroDrive {
 			continue
@@ -335,19 +402,24 @@ func (t *tracer) locate(p, q *tracePoint, a, b constraint) (tracePoint, int, boo
 		var s site
 		s.set(e, betweenPlaces(p.place(), q.place(), p.t, q.t, h, u))
 		ca, cb := a, b
-		cc := constraint{phase: w1.phase}
-		cc.y = e.sys.Solids[cc.phase].Drive(&s.pot.Mu, s.T).Y
+		cc := constraint{phase: w1.phase, y: w1.y}
+		if !w1.other {
+			cc.y = e.phaseOf(cc.phase).Drive(&s.pot.Mu, s.T).Y
+		}
 		if !e.solvePoint(&s, &ca, &cb, &cc) {
-			return found, -1, false
+			return found, false
+		}
+		if w1.other && trivial(&s, &ca, &cb, &cc) {
+			return found, false
 		}
 		along := s.z.minus(z0).dot(dir)
 		off := s.z.minus(z0).plus(dir, -along).norm()
 		if along < 1e-3*h && along < 1e-6 || along > 1.05*h || off > 0.3*h {
-			return found, -1, false
+			return found, false
 		}
 		if along < best {
-			best, phase = along, w1.phase
-			found = tracePoint{x: s.x, z: s.z, a: ca.state()}
+			best = along
+			found = tracePoint{x: s.x, z: s.z, a: ca.state(), c: cc.state()}
 			_, ga := ca.eval(e, &s)
 			_, gb := cb.eval(e, &s)
 			if cb.phase != isothermal {
@@ -356,7 +428,15 @@ func (t *tracer) locate(p, q *tracePoint, a, b constraint) (tracePoint, int, boo
 			found.t, _ = tangent(ga, gb, dir)
 		}
 	}
-	return found, phase, phase >= 0
+	return found, !math.IsInf(best, 1)
+}
+
+// trivial reports that the third phase has become one of those it was to differ
+// from.
+func trivial(s *site, a, b, c *constraint) bool {
+	return c.phase == gibbs.Liquid && sameForm(c.y, s.x) ||
+		c.phase == a.phase && sameForm(c.y, a.y) ||
+		c.phase == b.phase && sameForm(c.y, b.y)
 }
 
 // hermiteVec is the cubic through z0 and z1 with unit tangents t0 and t1.

@@ -22,7 +22,10 @@ const (
 	Minimum   Kind = "minimum"    // T has a minimum along a boundary curve
 	LoopStart Kind = "loop start" // artificial node that closes a ring-shaped curve of constant T
 	AtApex    Kind = "apex"       // a curve runs into an apex: one solid lies outside the triangle
-	Critical  Kind = "critical"   // the two sides of a curve become identical
+	Critical  Kind = "critical"   // the two liquids, or the two forms of one solid solution, become identical
+	// Monotectic: two liquids coexist with two solids (inside) or one (on an
+	// edge). Each of the two liquids has a node; Conjugate joins them.
+	Monotectic Kind = "monotectic"
 )
 
 // CurveKind says what a falling temperature does along a boundary curve.
@@ -33,6 +36,7 @@ const (
 	Reaction   CurveKind = "reaction"   // odd: L + A → B
 	Polymorph  CurveKind = "polymorph"  // A and B have one composition; the curve is an isotherm
 	Degenerate CurveKind = "degenerate" // the sign cannot be told: at an extremum of T
+	TwoLiquids CurveKind = "monotectic" // the liquid coexists with a second liquid and a solid
 )
 
 // Node is a vertex of the projection: an invariant point, a point on an edge
@@ -42,8 +46,10 @@ type Node struct {
 	Kind   Kind
 	Edge   int // index of the component that is absent, or -1 inside the triangle
 	Liquid ternary.Composition
-	T      float64       // K
-	Solids []gibbs.State // the solids that coexist with the liquid
+	T      float64 // K
+	// Solids are the phases that coexist with the liquid. A second liquid is
+	// listed among them, with State.Phase gibbs.Liquid.
+	Solids []gibbs.State
 	// Coefficients are moles of formula units of each solid made from one mole
 	// of liquid components (negative: the solid is consumed with the liquid).
 	// Nil where the reaction is not unique.
@@ -51,6 +57,8 @@ type Node struct {
 	// Heat is what the reaction, read from the liquid to the solids, releases: J
 	// per mole of liquid components. It is negative at a metatectic.
 	Heat float64
+	// Conjugate is the index of the node of the second liquid, or -1.
+	Conjugate int
 	// Residual is the largest |driving force| of the solids, divided by RT.
 	Residual float64
 }
@@ -70,14 +78,20 @@ type Point struct {
 // Curve is an arc of the projection between two nodes, along which two solids
 // coexist with the liquid and T does not rise.
 type Curve struct {
-	Solids   [2]int // indices in System.Solids
-	From, To int    // indices in Projection.Nodes; T(From) ≥ T(To)
+	// Solids are indices in System.Solids. They are equal where two forms of one
+	// solid solution coexist; the second is gibbs.Liquid on a monotectic curve,
+	// where the liquid coexists with one solid and a second liquid.
+	Solids   [2]int
+	From, To int // indices in Projection.Nodes; T(From) ≥ T(To)
 	Points   []Point
 }
 
 // Field is one connected primary field.
 type Field struct {
 	Solid int // index in System.Solids
+	// TwoLiquids: liquids of this field have separated into two before the solid
+	// comes in.
+	TwoLiquids bool
 	// Outline goes once round the field, counter-clockwise in the drawing of
 	// Composition.XY, first point not repeated. A field with holes lists them.
 	Outline []ternary.Composition
@@ -91,6 +105,8 @@ type IsothermLine struct {
 	Solid  int
 	Points []ternary.Composition
 	Closed bool
+	// TieLine: the line joins two conjugate liquids across a two-liquid field.
+	TieLine bool
 }
 
 // Isotherm is the set of liquids whose liquidus temperature is T.
@@ -116,9 +132,12 @@ type Projection struct {
 	Fields    []Field
 	Isotherms []Isotherm
 	Checks    Checks
-	// Unmixed lists liquid compositions on the liquidus at which the liquid is
-	// not stable against separating into two. The projection is then not
-	// complete.
+	// Extrema are points within fields of solid solutions, or on edges, at which
+	// the liquidus temperature is stationary: minima, and maxima other than
+	// apexes. They are no nodes of the graph.
+	Extrema []Node
+	// Unmixed lists liquids on the liquidus that separate into two but lie in no
+	// two-liquid field that was found: the projection is then not complete.
 	Unmixed []ternary.Composition
 	// Apexes are the liquidus temperatures, K, and primary solids of the three
 	// pure components.

@@ -22,6 +22,7 @@ func Cases() []Case {
 		{"ring", "a compound whose field lies wholly inside another field", Ring()},
 		{"join", "a congruent compound: a maximum where the join crosses the boundary curve", Join()},
 		{"hugging", "a ternary compound whose field comes within a thousandth of a side", Hugging()},
+		{"two liquids", "components A and B that do not mix: a two-liquid field on their edge", TwoLiquids()},
 	}
 }
 
@@ -103,6 +104,19 @@ func Join() *gibbs.System {
 	solids := pures([3]float64{1200, 1200, 1250}, [3]float64{30000, 30000, 30000})
 	solids = append(solids, compound("K", l, [3]float64{1, 1, 0}, gibbs.Fusion{T: 1300, H: 65000}))
 	return newSystem("join", cs, l, solids...)
+}
+
+// TwoLiquidsL is the regular-solution term of A and B in TwoLiquids, J/mol: twice
+// R times the critical temperature.
+const TwoLiquidsL = 30000.0
+
+// TwoLiquids has a regular solution of A and B that separates below 1804 K, well
+// above the freezing of A, and C that dissolves both.
+func TwoLiquids() *gibbs.System {
+	cs, _ := base()
+	l := gibbs.NewLiquid(cs, gibbs.Mixing{Pairs: []gibbs.Pair{{I: 0, J: 1, L: []gibbs.TFunc{{A: TwoLiquidsL}}}}})
+	solids := pures([3]float64{1500, 1100, 1000}, [3]float64{30000, 22000, 20000})
+	return newSystem("two liquids", cs, l, solids...)
 }
 
 // Hugging has the compound ABC, which melts so far above its surroundings that

@@ -14,6 +14,7 @@ type Options struct {
 	Ideal       bool // no excess terms in liquid and solids
 	Harsh       bool // entropies of compounds drawn freely, stronger attraction: reactions that take up heat
 	NoSolutions bool // stoichiometric solids only
+	Unmixing    bool // two components repel each other so much that most liquids separate
 }
 
 // Ranges of the invented data.
@@ -44,7 +45,8 @@ type draw struct {
 // inside, now and then two forms of one substance; a liquid with
 // Redlich–Kister terms of order 0 to 2, linear in T, under any of the three
 // extensions, and ternary terms. Attraction may be strong; repulsion stays
-// below what would unmix the liquid at its freezing temperature at most seeds.
+// below what would unmix the liquid at its freezing temperature at most seeds,
+// unless Options.Unmixing asks for it.
 func System(seed int64, o Options) *gibbs.System {
 	if o.MaxSolids == 0 {
 		o.MaxSolids = 8
@@ -106,7 +108,11 @@ func (d *draw) liquidMixing() (m gibbs.Mixing) {
 		if d.o.Harsh {
 			low = -4
 		}
-		l := []gibbs.TFunc{d.term(low, 2.2)}
+		high := 2.2
+		if d.o.Unmixing && len(m.Pairs) == 0 {
+			low, high = 2.6, 4.5
+		}
+		l := []gibbs.TFunc{d.term(low, high)}
 		if d.chance(0.6) {
 			l = append(l, d.term(-0.5, 0.5))
 		}

@@ -52,14 +52,16 @@ func Potentials(liquid *gibbs.Phase, x ternary.Composition, T float64) (mu [3]fl
 	return mu
 }
 
-// logitReach and logitStep bound the search for the best composition of a
-// solution: fractions down to e^-30 relative to the largest, in steps that put
-// several nodes into each basin of a Redlich–Kister model of low order.
+// The mesh of the search for the best composition of a solution, in logarithms
+// of the ratios of the fractions: steps that put several nodes into each basin
+// of a Redlich–Kister model of low order. The search that follows may leave it.
 const (
-	logitReach = 30.0
-	logitStep2 = 0.25
-	logitStep3 = 1.5
-	logitEnd   = 1e-7 // the last step; D is stationary, so its error is the square
+	logitReach2 = 30.0
+	logitReach3 = 16.0
+	logitStep2  = 0.25
+	logitStep3  = 2.0
+	logitEnd    = 1e-7 // the last step; D is stationary, so its error is the square
+	evenMesh    = 14   // intervals per side of a second mesh, even in the fractions, for three
 )
 
 // Force is the driving force of a phase against the plane mu, J per mole of
@@ -133,9 +135,9 @@ func softmax(live []int, u [2]float64) (y [3]float64) {
 // mesh returns the nodes that are not lower than their neighbours.
 func mesh(n int, at func([2]float64) (float64, [3]float64)) (starts [][2]float64) {
 	if n == 2 {
-		m := int(2*logitReach/logitStep2) + 1
+		m := int(2*logitReach2/logitStep2) + 1
 		v := make([]float64, m)
-		u := func(i int) [2]float64 { return [2]float64{-logitReach + float64(i)*logitStep2} }
+		u := func(i int) [2]float64 { return [2]float64{-logitReach2 + float64(i)*logitStep2} }
 		for i := range v {
 			v[i], _ = at(u(i))
 		}
@@ -146,10 +148,10 @@ func mesh(n int, at func([2]float64) (float64, [3]float64)) (starts [][2]float64
 		}
 		return starts
 	}
-	m := int(2*logitReach/logitStep3) + 1
+	m := int(2*logitReach3/logitStep3) + 1
 	v := make([]float64, m*m)
 	u := func(i, j int) [2]float64 {
-		return [2]float64{-logitReach + float64(i)*logitStep3, -logitReach + float64(j)*logitStep3}
+		return [2]float64{-logitReach3 + float64(i)*logitStep3, -logitReach3 + float64(j)*logitStep3}
 	}
 	for i := 0; i < m; i++ {
 		for j := 0; j < m; j++ {
@@ -162,6 +164,37 @@ func mesh(n int, at func([2]float64) (float64, [3]float64)) (starts [][2]float64
 			for a := max(0, i-1); a <= min(m-1, i+1); a++ {
 				for b := max(0, j-1); b <= min(m-1, j+1); b++ {
 					top = top && v[a*m+b] <= v[i*m+j]
+				}
+			}
+			if top {
+				starts = append(starts, u(i, j))
+			}
+		}
+	}
+	return append(starts, even(at)...)
+}
+
+// even returns the starts of a mesh of three fractions, all positive, that is even in the
+// fractions: two liquids may lie within one step of the logarithmic one.
+func even(at func([2]float64) (float64, [3]float64)) (starts [][2]float64) {
+	const n = evenMesh
+	u := func(i, j int) [2]float64 {
+		a, b, c := float64(i)+0.1, float64(j)+0.1, float64(n-i-j)+0.1
+		return [2]float64{math.Log(b / a), math.Log(c / a)}
+	}
+	var v [n + 1][n + 1]float64
+	for i := 0; i <= n; i++ {
+		for j := 0; i+j <= n; j++ {
+			v[i][j], _ = at(u(i, j))
+		}
+	}
+	for i := 0; i <= n; i++ {
+		for j := 0; i+j <= n; j++ {
+			top := true
+			for _, d := range [6][2]int{{0, 1}, {1, 0}, {1, -1}, {0, -1}, {-1, 0}, {-1, 1}} {
+				a, b := i+d[0], j+d[1]
+				if a >= 0 && b >= 0 && a+b <= n && v[a][b] > v[i][j] {
+					top = false
 				}
 			}
 			if top {

@@ -1,0 +1,71 @@
+package main
+
+import (
+	"errors"
+	"fmt"
+
+	"thalweg/render"
+	"thalweg/ternary/descent"
+	"thalweg/ternary/liquidus"
+)
+
+// Widths of figures in mm.
+const (
+	defaultWidth = render.DoubleColumn
+	narrowest    = 60
+	widest       = 400
+)
+
+func figureFormats() []string { return render.Formats() }
+
+func checkStyle(name string) error {
+	if _, err := render.StyleNamed(name); err != nil {
+		return &usageError{Where: "--style", What: fmt.Sprintf("%q is unknown", name), Remedy: "write colour or ink", Err: err}
+	}
+	return nil
+}
+
+// picture is what a figure shows.
+type picture struct {
+	projection *liquidus.Projection
+	paths      []*descent.Path
+	samples    []sample
+	provenance string
+}
+
+// draw writes the figures that were asked for. All of them are tried; the error
+// joins those that failed.
+func (f *figureFlags) draw(s *subject, p picture) error {
+	if len(f.Figures) == 0 {
+		return nil
+	}
+	style, err := render.StyleNamed(f.Style)
+	if err != nil {
+		return badInput(err)
+	}
+	fig := render.Figure{Projection: p.projection, Paths: p.paths, Basis: s.basis, Style: style, WidthMM: f.WidthMM, Provenance: p.provenance}
+	for _, q := range p.samples {
+		fig.Samples = append(fig.Samples, render.Sample{Name: q.Name, Composition: q.X})
+	}
+	scene, err := fig.Scene()
+	if err != nil {
+		return figureError(err)
+	}
+	var failed []error
+	for _, path := range f.Figures {
+		if err := scene.WriteFile(path, render.Options{Producer: program + " " + s.version}); err != nil {
+			failed = append(failed, figureError(err))
+		}
+	}
+	return errors.Join(failed...)
+}
+
+// figureError marks what the user's words made undrawable: a sample's name with
+// a character that the font lacks.
+func figureError(err error) error {
+	var glyph *render.GlyphError
+	if errors.As(err, &glyph) {
+		return badInput(err)
+	}
+	return fmt.Errorf("the figure could not be made: %w", err)
+}

@@ -1,0 +1,239 @@
+package main
+
+import (
+	"errors"
+	"fmt"
+	"math"
+	"strings"
+
+	"github.com/spf13/cobra"
+
+	"thalweg/ternary"
+	"thalweg/ternary/gibbs"
+	"thalweg/ternary/liquidus"
+)
+
+// LiquidusOptions are the options of the verb liquidus.
+type LiquidusOptions struct {
+	resultFlags
+	systemFlags
+	figureFlags
+	Isotherms string
+	Samples   string // file; empty for none
+
+	isotherms isotherms
+}
+
+// NewCmdLiquidus builds the verb liquidus; runF replaces its run function in
+// tests.
+func NewCmdLiquidus(e *env, runF func(*LiquidusOptions) error) *cobra.Command {
+	o := &LiquidusOptions{}
+	cmd := &cobra.Command{
+		Use:   "liquidus [SYSTEM]",
+		Short: "Compute the liquidus projection of a system",
+		Long: `Compute the liquidus projection of a system: invariant points with their
+reactions, boundary curves, primary fields and isotherms, and a check that
+nothing is missing.
+
+SYSTEM is a built-in name or the path of a .toml file; without it, ` + defaultSystem + `.
+Compositions are percentages in the basis in force. Isotherms at an interval keep
+to the range of temperature for which the system file vouches. The result of
+--format csv holds one record for each point; that of --format json is one object.`,
+		Example: `  thalweg liquidus di-an-fo
+  thalweg liquidus di-ab-an --isotherms 25 --figure basalt.pdf --width 84 --style ink
+  thalweg liquidus lif-naf-kf --basis mol --isotherms 500,600,700 --format json --output salt.json
+  thalweg liquidus di-an-fo --without An --figure metastable.svg
+  thalweg liquidus di-ab-an --samples samples.csv --figure samples.pdf --figure samples.png`,
+		Args: atMostOneSystem,
+		RunE: func(cmd *cobra.Command, args []string) error {
+			o.fill(cmd, args)
+			if err := o.check(); err != nil {
+				return err
+			}
+			e.idleFigureFlags(cmd, &o.figureFlags, o.Quiet)
+			if runF != nil {
+				return runF(o)
+			}
+			return liquidusRun(e, o)
+		},
+	}
+	o.resultFlags.add(cmd)
+	o.systemFlags.add(cmd)
+	o.figureFlags.add(cmd)
+	cmd.Flags().StringVar(&o.Isotherms, "isotherms", "auto", "`interval` in °C (50), list of temperatures in °C (1200,1250,1300; a single one as 1200,), auto or none")
+	cmd.Flags().StringVar(&o.Samples, "samples", "", "`file` of samples to place on the projection: CSV with columns name and component symbols")
+	choices(cmd, "isotherms", "auto", "none", "25", "50", "100")
+	_ = cmd.RegisterFlagCompletionFunc("samples", endings("csv"))
+	return cmd
+}
+
+func (o *LiquidusOptions) check() (err error) {
+	if o.isotherms, err = parseIsotherms(o.Isotherms); err != nil {
+		return err
+	}
+	for _, check := range []func() error{o.resultFlags.check, o.systemFlags.check, o.figureFlags.check} {
+		if err := check(); err != nil {
+			return err
+		}
+	}
+	return checkTargets(o.Output, o.Figures, o.System, o.Samples)
+}
+
+// idleFigureFlags says which flags do nothing for want of a figure.
+func (e *env) idleFigureFlags(cmd *cobra.Command, f *figureFlags, quiet bool) {
+	if len(f.Figures) > 0 {
+		return
+	}
+	for _, name := range []string{"width", "style"} {
+		if cmd.Flags().Changed(name) {
+			e.notice(quiet, "--%s has no effect without --figure", name)
+		}
+	}
+}
+
+// liquidusResult is what the writers of the verb get.
+type liquidusResult struct {
+	*subject
+	projection *liquidus.Projection
+	interval   float64 // °C between isotherms, 0 for none or a list
+	samples    []placed
+	complete   bool
+}
+
+// placed is a sample with its liquidus.
+type placed struct {
+	sample
+	T       float64 // K; infinite when there is none
+	primary gibbs.State
+}
+
+func liquidusRun(e *env, o *LiquidusOptions) error {
+	s, err := e.open(&o.systemFlags, o.Quiet)
+	if err != nil {
+		return err
+	}
+	var list []sample
+	if o.Samples != "" {
+		if list, err = e.loadSamples(o.Samples, s, o.Quiet); err != nil {
+			return err
+		}
+	}
+	bar := e.startProgress(o.Quiet, "projection", 1)
+	p, interval, missed, err := e.project(s, o.isotherms)
+	bar.stop()
+	if err != nil {
+		return err
+	}
+	e.noticeProjection(s, p, missed, o.Quiet)
+	reasons := projectionReasons(p)
+	r := &liquidusResult{subject: s, projection: p, interval: interval, complete: len(reasons) == 0}
+	if r.samples, err = s.place(list); err != nil {
+		return err
+	}
+	result, err := r.encode(o.Format)
+	if err != nil {
+		return err
+	}
+	return errors.Join(
+		e.deliver(o.Output, result),
+		o.draw(s, picture{projection: p, samples: list, provenance: s.provenance("liquidus", "basis "+s.basis.String())}),
+		incomplete(reasons),
+	)
+}
+
+func (r *liquidusResult) encode(format string) ([]byte, error) {
+	switch format {
+	case "json":
+		return toJSON(r.json())
+	case "csv":
+		return r.csv()
+	}
+	return []byte(r.text()), nil
+}
+
+// place finds the liquidus of each sample.
+func (s *subject) place(list []sample) ([]placed, error) {
+	if len(list) == 0 {
+		return nil, nil
+	}
+	surface, err := liquidus.NewSurface(s.sys)
+	if err != nil {
+		return nil, err
+	}
+	var out []placed
+	for _, q := range list {
+		T, primary := surface.Liquidus(q.X)
+		out = append(out, placed{q, T, primary})
+	}
+	return out, nil
+}
+
+// noticeProjection says what a reader of the projection should know.
+func (e *env) noticeProjection(s *subject, p *liquidus.Projection, missed []float64, quiet bool) {
+	if low, high, ok := extent(p); ok && len(missed) > 0 {
+		var t []string
+		for _, v := range missed {
+			t = append(t, short(v))
+		}
+		e.notice(quiet, "there is no isotherm of %s °C: the liquidus runs from %.0f to %.0f °C", strings.Join(t, ", "), low, high)
+	}
+	var off []string
+	for _, n := range p.Nodes {
+		if s.outside(n.T) && n.Kind != liquidus.LoopStart {
+			off = append(off, n.ID)
+		}
+	}
+	if len(off) > 0 {
+		e.notice(quiet, "outside the range for which the system file vouches, %s: %s", s.vouched(), strings.Join(off, ", "))
+	}
+}
+
+// reaction writes what a node's liquid does on cooling: L + Fo → En.
+func (s *subject) reaction(n *liquidus.Node) string {
+	names := s.names(n.Solids)
+	if len(n.Coefficients) != len(names) || len(names) == 0 {
+		return ""
+	}
+	left, right := []string{s.sys.Liquid.Symbol}, []string{}
+	for i, c := range n.Coefficients {
+		switch {
+		case c < 0:
+			left = append(left, names[i])
+		case c > 0:
+			right = append(right, names[i])
+		}
+	}
+	return fmt.Sprintf("%s → %s", strings.Join(left, " + "), strings.Join(right, " + "))
+}
+
+// edge names the two components of a point on the triangle's edge.
+func (s *subject) edge(n *liquidus.Node) []string {
+	out := []string{}
+	for i, c := range s.sys.Components {
+		if n.Edge >= 0 && i != n.Edge {
+			out = append(out, c.Symbol)
+		}
+	}
+	return out
+}
+
+// area is the share of the triangle, drawn in the basis in force, that a field
+// covers.
+func (s *subject) area(f *liquidus.Field) float64 {
+	sum := s.ring(f.Outline)
+	for _, h := range f.Holes {
+		sum -= s.ring(h)
+	}
+	return sum
+}
+
+// ring is the area of a polygon as a share of the triangle's.
+func (s *subject) ring(outline []ternary.Composition) float64 {
+	sum := 0.0
+	for i := range outline {
+		a := s.sys.Components.Fractions(outline[i], s.basis)
+		b := s.sys.Components.Fractions(outline[(i+1)%len(outline)], s.basis)
+		sum += a[0]*b[1] - a[1]*b[0]
+	}
+	return math.Abs(sum)
+}
