@@ -4,7 +4,6 @@ import (
 	"errors"
 	"fmt"
 	"math"
-	"sort"
 
 	"thalweg/ternary"
 	"thalweg/ternary/gibbs"
@@ -12,7 +11,8 @@ import (
 
 // Options of Compute. The zero value asks for everything but isotherms.
 type Options struct {
-	// Isotherms are temperatures, K, at which isotherms are traced.
+	// Isotherms are temperatures, K, at which isotherms are traced, in the order of
+	// the result.
 	Isotherms []float64
 	// Mesh is the number of intervals per side of the mesh that seeds and
 	// checks the search; 0 means DefaultMesh.
@@ -68,7 +68,6 @@ func Compute(sys *gibbs.System, o Options) (*Projection, error) {
 	e.explainMesh()
 	e.findIslands()
 	p := e.assemble()
-	sort.Sort(sort.Reverse(sort.Float64Slice(append([]float64(nil), o.Isotherms...))))
 	for _, T := range o.Isotherms {
 		p.Isotherms = append(p.Isotherms, e.isotherm(p, T))
 	}

@@ -12,7 +12,6 @@ import (
 type mesh struct {
 	n       int
 	nodes   []surface
-	hints   []saturated
 	crossed [3][]crossing // by direction and node: curves that cross the link
 }
 

@@ -1,7 +1,6 @@
 package liquidus_test
 
 import (
-	"fmt"
 	"math"
 	"testing"
 
@@ -113,8 +112,8 @@ func TestPublishedPoints(t *testing.T) {
 			done[row.system] = p
 		}
 		got := row.got(t, p)
-		t.Log(fmt.Sprintf("%-11s %-32s measured %8.1f  computed %8.1f  misfit %+6.1f (allowed %.1f) %s  [%s]",
-			row.system, row.what, row.want, got, got-row.want, row.tol, row.unit, row.source))
+		t.Logf("%-11s %-32s measured %8.1f  computed %8.1f  misfit %+6.1f (allowed %.1f) %s  [%s]",
+			row.system, row.what, row.want, got, got-row.want, row.tol, row.unit, row.source)
 		if math.Abs(got-row.want) > row.tol {
 			t.Errorf("%s, %s: %.2f %s, measured %.2f ± %.2f", row.system, row.what, got, row.unit, row.want, row.tol)
 		}

@@ -44,11 +44,6 @@ type place struct {
 	t float64 // T/tRef
 }
 
-func (p place) vec() vec {
-	px, py := p.x.XY()
-	return vec{px, py, p.t}
-}
-
 // moved is the place a step further.
 func (p place) moved(v vec, s float64) place {
 	for i := range p.x {

@@ -11,7 +11,7 @@ const (
 	stepFirst = 0.015 // first step, in triangle sides (T counts by tRef)
 	stepMax   = 0.07  // longest step: a curve is never drawn with fewer than some 10 points a side
 	stepMin   = 1e-8  // below this a curve is given up as lost
-	turnAim   = 0.10  // aimed turn of the tangent per step, rad: chords stay within 1e-3 of a side, cubics within 1e-6
+	turnAim   = 0.10  // aimed turn of the tangent per step, rad: chords stray by 1e-3 of a side at the most, cubics by 1e-5 and, beside an edge, 3e-4
 	turnMax   = 0.25  // a step that turns more is repeated shorter
 	stepsMax  = 5000  // bound on the steps of one curve
 

@@ -71,7 +71,7 @@ func newton(sys *gibbs.System, b ternary.Composition, T float64, mu [3]float64, 
 			return nil, err
 		}
 	}
-	return nil, fmt.Errorf("Newton's method stopped at a residual of %.1e", best)
+	return nil, fmt.Errorf("the iteration stopped at a residual of %.1e", best)
 }
 
 // kkt is the state of the iteration.
