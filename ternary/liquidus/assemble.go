@@ -41,6 +41,7 @@ func (e *engine) assemble() *Projection {
 		e.findStops(ed, p.Nodes)
 	}
 	e.buildFields(p)
+	e.findExtrema(p)
 	return p
 }
 

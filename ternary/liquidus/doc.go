@@ -15,7 +15,9 @@
 //	boundary.go    boundary curves between nodes
 //	classify.go    cotectic or reaction; eutectic, reaction point, peritectic
 //	graph.go       the planar graph, its faces, Euler's formula
+//	twoliquids.go  monotectic curves and their conjugate liquids
 //	field.go       primary fields
+//	extrema.go     azeotropes and congruent melting points
 //	isotherm.go    isotherms
 //	compute.go     the whole, in this order
 //

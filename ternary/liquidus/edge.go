@@ -26,6 +26,13 @@ type edge struct {
 	nodes   []int     // engine nodes, in the order in which they were found
 	at      []float64 // their positions
 	stops   []stop    // samples, nodes and peaks in order of rising position
+	extrema []edgeExtremum
+}
+
+// edgeExtremum is an extremum of T along an edge within one field.
+type edgeExtremum struct {
+	at   float64
+	kind Kind
 }
 
 // stop is a point of an edge between which the liquidus rises or falls steadily;
@@ -87,12 +94,19 @@ func (e *engine) findStops(ed *edge, nodes []Node) {
 		}
 		if x, err := ternary.Normalize(p.Members[0].C); err == nil && x[ed.k] == 0 && x.Inside(0) && x[j] > 0 && x[j] < 1 {
 			add(x[j])
+			ed.extrema = append(ed.extrema, edgeExtremum{x[j], Maximum})
 		}
 	}
 	for n := 1; n+1 < len(ed.samples); n++ {
 		a, b, c := &ed.samples[n-1], &ed.samples[n], &ed.samples[n+1]
 		if a.primary == b.primary && b.primary == c.primary && b.primary >= 0 && !e.sys.Solids[b.primary].Stoichiometric() && (b.T-a.T)*(c.T-b.T) < 0 {
-			add(e.edgeExtremum(b.primary, x0, dx, a.at, c.at, b.T > a.T))
+			at := e.extremumOnEdge(b.primary, x0, dx, a.at, c.at, b.T > a.T)
+			add(at)
+			kind := Minimum
+			if b.T > a.T {
+				kind = Maximum
+			}
+			ed.extrema = append(ed.extrema, edgeExtremum{at, kind})
 		}
 	}
 	for n, k := range ed.nodes {
@@ -120,8 +134,8 @@ func (ed *edge) nodeAt(at float64) bool {
 	return false
 }
 
-// edgeExtremum finds an extremum of T_φ along an edge by golden section.
-func (e *engine) edgeExtremum(p int, x0, dx ternary.Composition, lo, hi float64, max bool) float64 {
+// extremumOnEdge finds an extremum of T_φ along an edge by golden section.
+func (e *engine) extremumOnEdge(p int, x0, dx ternary.Composition, lo, hi float64, max bool) float64 {
 	const g = 0.6180339887498949
 	T := func(at float64) float64 {
 		c := e.column(onLine(x0, dx, at))

@@ -277,7 +277,7 @@ func (e *engine) climbPeak(f *Field) {
 	for h := 0.5 / float64(m.n+1); h > 1e-7; h /= 2 {
 		for moved := true; moved; {
 			moved = false
-			for _, d := range [6][3]float64{{1, -1, 0}, {-1, 1, 0}, {0, 1, -1}, {0, -1, 1}, {1, 0, -1}, {-1, 0, 1}} {
+			for _, d := range hexagon {
 				y := ternary.Composition{bestX[0] + h*d[0], bestX[1] + h*d[1], bestX[2] + h*d[2]}
 				if !y.Inside(0) {
 					continue

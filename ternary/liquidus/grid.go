@@ -296,7 +296,7 @@ func (e *engine) refineIsland(p, i, j int) {
 	h := 0.5 / float64(m.n+1)
 	for round := 0; round < 40 && h > 1e-6; round++ {
 		moved := false
-		for _, d := range [6][3]float64{{1, -1, 0}, {-1, 1, 0}, {0, 1, -1}, {0, -1, 1}, {1, 0, -1}, {-1, 0, 1}} {
+		for _, d := range hexagon {
 			y := ternary.Composition{x[0] + h*d[0], x[1] + h*d[1], x[2] + h*d[2]}
 			if !y.Inside(-1e-9) {
 				continue

@@ -48,9 +48,19 @@ func (e *engine) isotherm(p *Projection, T float64) Isotherm {
 		}
 	}
 	iso.Lines = append(iso.Lines, e.tieLines(cs)...)
-	for i := range p.Fields {
-		if pts, ok := e.closedIsotherm(&p.Fields[i], T, iso.Lines); ok {
-			iso.Lines = append(iso.Lines, IsothermLine{Solid: p.Fields[i].Solid, Points: e.line(pts), Closed: true})
+	for i := range p.Extrema {
+		x := &p.Extrema[i]
+		if x.Edge >= 0 {
+			continue
+		}
+		for k := range p.Fields {
+			f := &p.Fields[k]
+			if f.TwoLiquids || f.Solid != x.Solids[0].Phase || !f.contains(x.Liquid) {
+				continue
+			}
+			if pts, ok := e.closedIsotherm(f, x, T, iso.Lines); ok {
+				iso.Lines = append(iso.Lines, IsothermLine{Solid: f.Solid, Points: e.line(pts), Closed: true})
+			}
 		}
 	}
 	return iso
@@ -251,36 +261,34 @@ func (e *engine) tieLines(cs []crossingPoint) []IsothermLine {
 	return out
 }
 
-// closedIsotherm traces the ring of T round the peak of a field, if there is one
-// and it is not among the lines already traced.
-func (e *engine) closedIsotherm(f *Field, T float64, lines []IsothermLine) ([]tracePoint, bool) {
-	if f.TwoLiquids || f.Solid < 0 || f.PeakT <= T || math.IsInf(f.PeakT, 0) || f.Peak[0] <= 0 || f.Peak[1] <= 0 || f.Peak[2] <= 0 || !f.contains(f.Peak) {
-		return nil, false
-	}
-	// walk from the peak towards the nearest point of the outline
+// closedIsotherm traces the ring of T round an extremum of a field, if there is
+// one and it is not among the lines already traced.
+func (e *engine) closedIsotherm(f *Field, top *Node, T float64, lines []IsothermLine) ([]tracePoint, bool) {
+	above := top.T > T
+	// walk from the extremum towards the nearest point of the outline
 	near := f.Outline[0]
 	for _, x := range f.Outline {
-		if x.Distance(f.Peak) < near.Distance(f.Peak) {
+		if x.Distance(top.Liquid) < near.Distance(top.Liquid) {
 			near = x
 		}
 	}
 	c := e.column(near)
-	if e.saturation(f.Solid, &c, saturated{}).T > T {
+	if (e.saturation(f.Solid, &c, saturated{}).T > T) == above {
 		return nil, false // T is not reached inside the field: no ring
 	}
 	lo, hi := 0.0, 1.0
 	var sol saturated
 	for round := 0; round < 60; round++ {
 		mid := (lo + hi) / 2
-		c := e.column(f.Peak.Lerp(near, mid))
+		c := e.column(top.Liquid.Lerp(near, mid))
 		sol = e.saturation(f.Solid, &c, sol)
-		if sol.T > T {
+		if (sol.T > T) == above {
 			lo = mid
 		} else {
 			hi = mid
 		}
 	}
-	x := f.Peak.Lerp(near, (lo+hi)/2)
+	x := top.Liquid.Lerp(near, (lo+hi)/2)
 	if !f.contains(x) || onLines(x, f.Solid, lines) {
 		return nil, false
 	}
