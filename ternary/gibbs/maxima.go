@@ -5,8 +5,8 @@ import "math"
 // Starts of the search for all maxima of a phase that can unmix: a mesh fine
 // enough that each basin of a Redlich–Kister model of low order holds a node.
 const (
-	startMesh2 = 24
-	startMesh3 = 10
+	startMesh2 = 40
+	startMesh3 = 20
 )
 
 // maxima finds all local maxima of the driving force: the nodes of a mesh that
@@ -22,24 +22,38 @@ func (p *Phase) maxima(d *[3]float64, T float64) []Drive {
 	}
 	out := make([]Drive, 0, 3)
 	for _, y := range starts {
-		out = p.addMaximum(out, d, y, T)
-	}
-	for k := 0; k < len(out) && k < 4; k++ {
-		y := out[k].Y
-		v, ok := p.softest(y, T)
-		if !ok {
+		q := p.climb(d, y, T)
+		if p.settled(d, q.Y, T) && !p.isMaximum(q.Y, T) {
+			out = p.probe(out, d, q.Y, T) // a saddle: what it divides lies on both sides
 			continue
 		}
-		for _, s := range [10]float64{0.02, -0.02, 0.05, -0.05, 0.1, -0.1, 0.18, -0.18, 0.3, -0.3} {
-			z := [3]float64{y[0] + s*v[0], y[1] + s*v[1], y[2] + s*v[2]}
-			if z[0] >= 0 && z[1] >= 0 && z[2] >= 0 {
-				out = p.addMaximum(out, d, z, T)
-			}
-		}
+		out = p.addMaximum(out, d, q.Y, T)
+	}
+	for k := 0; k < len(out) && k < 4; k++ {
+		out = p.probe(out, d, out[k].Y, T)
 	}
 	for i := 1; i < len(out); i++ { // insertion sort: highest first
 		for k := i; k > 0 && out[k].D > out[k-1].D; k-- {
 			out[k], out[k-1] = out[k-1], out[k]
+		}
+	}
+	return out
+}
+
+// probes are the distances, in end-member fraction, of the starts along the
+// softest direction.
+var probes = [12]float64{0.006, -0.006, 0.02, -0.02, 0.05, -0.05, 0.1, -0.1, 0.18, -0.18, 0.3, -0.3}
+
+// probe climbs from points along the softest direction through y.
+func (p *Phase) probe(out []Drive, d *[3]float64, y [3]float64, T float64) []Drive {
+	v, ok := p.softest(y, T)
+	if !ok {
+		return out
+	}
+	for _, s := range probes {
+		z := [3]float64{y[0] + s*v[0], y[1] + s*v[1], y[2] + s*v[2]}
+		if z[0] >= 0 && z[1] >= 0 && z[2] >= 0 {
+			out = p.addMaximum(out, d, z, T)
 		}
 	}
 	return out
