@@ -37,6 +37,7 @@ type engine struct {
 	mesh     *mesh
 	problems []string
 	pending  []departure
+	buffer   []tracePoint // reused by isotherms
 }
 
 // Limits of the temperatures at which saturation is sought, as multiples of

@@ -44,7 +44,7 @@ func (e *engine) isotherm(p *Projection, T float64) Isotherm {
 				e.problem(fmt.Sprintf("the isotherm of %.1f K in the field of %s was lost", T, e.symbol(cs[i].solid[side])))
 				continue
 			}
-			iso.Lines = append(iso.Lines, IsothermLine{Solid: cs[i].solid[side], Points: e.line(pts)})
+			iso.Lines = append(iso.Lines, IsothermLine{Solid: cs[i].solid[side], Points: pts})
 		}
 	}
 	iso.Lines = append(iso.Lines, e.tieLines(cs)...)
@@ -68,17 +68,18 @@ func (e *engine) isotherm(p *Projection, T float64) Isotherm {
 
 // line converts traced points, with one point of the cubic between each two.
 func (e *engine) line(pts []tracePoint) []ternary.Composition {
-	out := make([]vec, 0, 2*len(pts))
+	out := make([]ternary.Composition, 0, 2*len(pts))
 	for i := range pts {
+		q := &pts[i]
 		if i > 0 {
-			p, q := pts[i-1], pts[i]
+			p := &pts[i-1]
 			if h := q.z.minus(p.z).norm(); h > 1e-9 {
-				out = append(out, hermiteVec(p.z, q.z, p.t, q.t, h, 0.5))
+				out = append(out, betweenPlaces(p.place(), q.place(), p.t, q.t, h, 0.5).x)
 			}
 		}
-		out = append(out, pts[i].z)
+		out = append(out, q.x)
 	}
-	return toCompositions(out)
+	return out
 }
 
 // curveCrossings finds where T lies on the boundary curves: at most once on
@@ -166,11 +167,11 @@ func (e *engine) edgeCrossing(a, b *stop, x0, dx ternary.Composition, T float64)
 }
 
 // isothermFrom follows the isotherm from a crossing into one of its fields.
-func (e *engine) isothermFrom(c *crossingPoint, side int, T float64, cs []crossingPoint) ([]tracePoint, bool) {
+func (e *engine) isothermFrom(c *crossingPoint, side int, T float64, cs []crossingPoint) ([]ternary.Composition, bool) {
 	a := constraint{phase: c.solid[side], y: c.y[side]}
 	t := constraint{phase: isothermal, t: T}
 	var s site
-	var head []tracePoint
+	head := e.buffer[:0]
 	var dir vec
 	if c.edge >= 0 {
 		at, d, ok := e.isothermInside(c, &a, t)
@@ -195,9 +196,14 @@ func (e *engine) isothermFrom(c *crossingPoint, side int, T float64, cs []crossi
 		}
 		dir = d
 	}
-	tr := newTracer(e, a, t).run(s.place(), dir, false)
-	pts := append(head, tr.points...)
-	return pts, e.matchEnd(tr, c.solid[side], cs)
+	follow := newTracer(e, a, t)
+	if cap(head) > 1 {
+		follow.buffer = head[len(head):]
+	}
+	tr := follow.run(s.place(), dir, false)
+	pts := append(head, tr.points...) // in place, unless the buffer grew
+	e.buffer = pts
+	return e.line(pts), e.matchEnd(tr, c.solid[side], cs)
 }
 
 // isothermInside solves the isotherm's first point inside the edge.

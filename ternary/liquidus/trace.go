@@ -77,6 +77,7 @@ type tracer struct {
 	merging  bool // a and b, or b and the liquid itself, can become one phase
 	s        site
 	now, old []watch
+	buffer   []tracePoint // where run collects its points; nil: anew
 }
 
 func newTracer(e *engine, a, b constraint) *tracer {
@@ -155,7 +156,10 @@ func (t *tracer) tieLength() float64 {
 // may come back to its start.
 func (t *tracer) run(from place, dir vec, closable bool) traced {
 	e := t.e
-	out := traced{points: make([]tracePoint, 0, 48)}
+	out := traced{points: t.buffer[:0]}
+	if t.buffer == nil {
+		out.points = make([]tracePoint, 0, 48)
+	}
 	t.s.set(e, from)
 	a, b := t.a, t.b
 	a.eval(e, &t.s)
