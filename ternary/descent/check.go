@@ -9,6 +9,8 @@ import (
 
 const (
 	balanceTol = 1e-12 // moles of a component per mole of bulk
+	meltTol    = 1e-10 // by how much the melt fraction may turn back
+	steadyTol  = 1e-7  // K: by how much the temperature may
 	driveTol   = 1e-8  // RT: an absent solid may lie this much above the plane
 )
 
@@ -24,16 +26,15 @@ func (w *walk) check() {
 	for i := range p.Steps {
 		s := &p.Steps[i]
 		c.MassBalance = math.Max(c.MassBalance, w.massBalance(s))
-		if i > 0 && s.MeltMass > p.Steps[i-1].MeltMass+1e-10 {
-			c.MeltMonotone = false
+		if i > 0 {
+			if w.dir*(s.MeltMass-p.Steps[i-1].MeltMass) < -meltTol {
+				c.MeltMonotone = false
+			}
+			if w.dir*(s.T-p.Steps[i-1].T) < -steadyTol {
+				c.TMonotone = false
+			}
 		}
-		if i > 0 && s.T > p.Steps[i-1].T+1e-7 {
-			c.TMonotone = false
-		}
-		if p.Mode == Equilibrium && len(s.Solids) > 3 {
-			c.PhaseRule = false
-		}
-		if len(s.Crystallising) > 3 {
+		if !w.obeysPhaseRule(s) {
 			c.PhaseRule = false
 		}
 		for k, a := range s.Affinity {
@@ -45,11 +46,11 @@ func (w *walk) check() {
 	if c.MassBalance > balanceTol {
 		fail("the masses miss the bulk by %.1e", c.MassBalance)
 	}
-	if !c.MeltMonotone && p.Mode == Fractional {
-		fail("the amount of melt rises on cooling")
+	if !c.MeltMonotone && (p.Mode == Fractional && w.keep == 0 || p.Mode == FractionalMelting) {
+		fail("the amount of melt turns back") // at equilibrium it may, at a metatectic
 	}
 	if !c.TMonotone {
-		fail("the temperature rises along the path")
+		fail("the temperature turns back along the path")
 	}
 	if !c.PhaseRule {
 		fail("more phases coexist than the phase rule allows")
@@ -60,6 +61,27 @@ func (w *walk) check() {
 	}
 	c.Passed = len(c.Problems) == 0
 	p.Checks = c
+}
+
+// obeysPhaseRule reports that no more phases coexist at a row than at constant
+// pressure may: as many as there are components, and one more at an event.
+func (w *walk) obeysPhaseRule(s *Step) bool {
+	components, phases := 0, len(s.Contact)
+	for i, b := range w.bulk {
+		if b > 0 || s.Liquid[i] > 0 {
+			components++
+		}
+	}
+	if w.path.Mode == Fractional && w.keep == 0 {
+		phases = len(s.Crystallising)
+	}
+	if s.MeltMass > 0 {
+		phases++
+	}
+	if s.Event != "" {
+		components++
+	}
+	return phases <= components
 }
 
 func contains(list []int, v int) bool {

@@ -10,11 +10,17 @@ import (
 )
 
 const (
-	coolFirst = 0.5  // K, first step of cooling
-	coolMax   = 15.0 // K, longest step
-	coolMin   = 1e-7 // K, shortest: below it the path is given up
-	meltAim   = 0.06 // aimed change of the melt fraction per step
-	shyStep   = 0.05 // K, step below which no phase is suspected to come and go within
+	coolFirst = 0.5   // K, first step of cooling
+	coolMax   = 15.0  // K, longest step
+	coolMin   = 1e-11 // K, shortest: below it the path is given up
+	meltAim   = 0.06  // aimed change of the melt fraction per step
+	shyStep   = 0.05  // K, step below which no phase is suspected to come and go within
+	// A step in which the melt fraction changes by more than leapMelt, and by more
+	// than leapRatio times what the slopes at its ends say, is halved down to
+	// leapStep, in kelvin.
+	leapMelt  = 0.02
+	leapRatio = 1.5
+	leapStep  = 1e-8
 	// aboveTol is the driving force, in RT, at which an absent phase has come in.
 	aboveTol = 1e-11
 	// maxStages bounds the assemblages of a path.
@@ -96,7 +102,7 @@ func (w *walk) cool(h holding) (*tangent.Equilibrium, bool, error) {
 			q, done := w.pass(ev)
 			return q, done, nil
 		}
-		if step > shyStep && w.shy(h, next) {
+		if step > shyStep && w.shy(h, next) || step > leapStep && w.leapt(&h, &next) {
 			step /= 2
 			continue
 		}
@@ -153,6 +159,16 @@ func (w *walk) hold(h *holding, b ternary.Composition, T float64) (*tangent.Equi
 		parts[i].Mole += h.dn[i] * (T - h.q.T)
 	}
 	return tangent.Hold(w.sys, b, T, mu, parts)
+}
+
+// leapt reports that the amount of melt changed between two states in a way that
+// the slopes at both do not explain: the solution may have gone over to another
+// branch.
+func (w *walk) leapt(a, b *holding) bool {
+	dT := b.q.T - a.q.T
+	change := w.meltMass(b.q) - w.meltMass(a.q)
+	s, t := w.meltSlope(a)*dT, w.meltSlope(b)*dT
+	return math.Abs(change) > leapMelt && math.Abs(change) > leapRatio*math.Max(math.Abs(s), math.Abs(t))
 }
 
 // shy reports that an absent phase may have come and gone between two states:

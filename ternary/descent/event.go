@@ -31,7 +31,7 @@ func (w *walk) firstEvent(a, b holding) (ev *event, found bool) {
 	try := func(parts []tangent.Part, zero int, arrives bool, share float64) {
 		found = true
 		e, ok := w.pin(&a, &b, parts, zero, share)
-		if !ok || w.dir*(e.q.T-a.q.T) < -eventSlack || w.dir*(e.q.T-b.q.T) > eventSlack {
+		if !ok || collapsed(e.q.Parts, zero) || w.dir*(e.q.T-a.q.T) < -eventSlack || w.dir*(e.q.T-b.q.T) > eventSlack {
 			return
 		}
 		e.arrives = arrives
@@ -70,11 +70,21 @@ func (w *walk) firstEvent(a, b holding) (ev *event, found bool) {
 	return ev, true
 }
 
+// collapsed reports that a part became identical with another of its phase.
+func collapsed(parts []tangent.Part, i int) bool {
+	for k := range parts {
+		if k != i && parts[k].State.Phase == parts[i].State.Phase && alike(&parts[k].State.Y, &parts[i].State.Y) {
+			return true
+		}
+	}
+	return false
+}
+
 // pin solves for the event at which parts[zero] has no amount, a share of the
 // way from a to b.
 func (w *walk) pin(a, b *holding, parts []tangent.Part, zero int, share float64) (event, bool) {
 	if w.keep < 1 {
-		return w.pinDraining(a, b, parts, zero)
+		return w.pinAlong(a, b, parts, zero)
 	}
 	T := a.q.T + share*(b.q.T-a.q.T)
 	mu := a.q.Mu
@@ -88,7 +98,10 @@ func (w *walk) pin(a, b *holding, parts []tangent.Part, zero int, share float64)
 		}
 	}
 	q, err := tangent.Event(w.sys, a.q.Bulk, T, mu, start, zero)
-	return event{q: q, part: zero}, err == nil
+	if err != nil || collapsed(q.Parts, zero) {
+		return w.pinAlong(a, b, parts, zero)
+	}
+	return event{q: q, part: zero}, true
 }
 
 // until is the state at an event as the end of a step that began at h: with the

@@ -9,7 +9,6 @@ import (
 	"thalweg/ternary"
 	"thalweg/ternary/gibbs"
 	"thalweg/ternary/liquidus"
-	"thalweg/ternary/tangent"
 )
 
 // Options of Follow. The zero value is equilibrium crystallisation.
@@ -58,9 +57,14 @@ func Follow(sys *gibbs.System, bulk ternary.Composition, o Options) (*Path, erro
 	if err := w.plan(o.Removals); err != nil {
 		return nil, err
 	}
-	if w.keep > 0 {
+	switch split := w.splits(w.path.LiquidT); {
+	case w.keep > 0 && split:
+		err = w.fromAbove()
+	case w.keep > 0:
 		err = w.equilibrium(primary)
-	} else {
+	case split:
+		err = fmt.Errorf("the liquid has separated into two already at %.2f °C, where its first solid would form; fractional crystallisation is followed from one liquid only: use equilibrium", w.path.LiquidT-ternary.ZeroCelsius)
+	default:
 		err = w.fractional(primary)
 	}
 	if err != nil {
@@ -127,17 +131,6 @@ func begin(sys *gibbs.System, bulk ternary.Composition, mode Mode, steps int) (*
 	w.gone.total = make([][3]float64, len(sys.Solids))
 	_, _, w.h0 = sys.Liquid.Gibbs(bulk, T)
 	w.path = &Path{System: sys, Mode: mode, Bulk: bulk, LiquidT: T, Steps: make([]Step, 0, steps+16)}
-	if sys.Liquid.CanUnmix(T) {
-		var pot gibbs.Potentials
-		x := [3]float64(bulk)
-		sys.Liquid.Potentials(&x, T, &pot)
-		self := []tangent.Part{{State: gibbs.State{Phase: gibbs.Liquid, Y: x}}}
-		for _, s := range tangent.Above(sys, pot.Mu, T, self, aboveTol) {
-			if s.Phase == gibbs.Liquid {
-				return nil, primary, fmt.Errorf("the liquid has separated into two already at %.2f °C, where its first solid would form: its path does not begin with one liquid", T-ternary.ZeroCelsius)
-			}
-		}
-	}
 	return w, primary, nil
 }
 
@@ -188,6 +181,12 @@ func (w *walk) plan(list []Removal) error {
 // weigh is the mass in g of contents c in moles of components.
 func (w *walk) weigh(c [3]float64) float64 {
 	return c[0]*w.mass[0] + c[1]*w.mass[1] + c[2]*w.mass[2]
+}
+
+// size is weigh without regard to signs: a solid outside the triangle may weigh
+// nothing.
+func (w *walk) size(c [3]float64) float64 {
+	return math.Abs(c[0])*w.mass[0] + math.Abs(c[1])*w.mass[1] + math.Abs(c[2])*w.mass[2]
 }
 
 func (w *walk) symbol(phase int) string {

@@ -24,7 +24,7 @@ const (
 	// stillTol: where (change of the liquid's composition per unit u) × (mass of
 	// liquid left) is below this, the rest crystallises without change and the
 	// masses balance to better than 1e-12.
-	stillTol = 1e-13
+	stillTol = 2e-14
 	// exhausted is the amount, in moles per mole of bulk, at which a component
 	// that a solid solution takes up counts as used up in the liquid.
 	exhausted = 1e-15
@@ -125,8 +125,8 @@ func (w *walk) stage(m *melt, a *active) (saturated []gibbs.State, done bool, er
 		w.stageRows(m, &b, &s, w.weigh(next.n))
 		w.fold(m, &next, &b)
 		*a, f = b, g
-		if w.exhaust(m, a, &f) && !w.flowAt(m, a, &f) {
-			return nil, false, errors.New("the liquid's course is not determined once a component is used up")
+		if w.exhaust(m, a, &f) {
+			return w.activeStates(a), false, nil
 		}
 		h = grown(h, size, fracTol)
 	}

@@ -111,27 +111,29 @@ func (w *walk) rates(m *melt, a *active, f *flow, want goal) (r [3]float64, dT f
 	k := a.count
 	var mat [4][5]float64
 	var dx [3][3]float64
-	var weight [3]float64 // the unknowns are masses, so that they are of one size
+	var size [3]float64 // the unknowns are masses, so that they are of one size
 	for j := 0; j < k; j++ {
 		dx[j] = f.moves(&f.st[j].C)
-		weight[j] = w.weigh(f.st[j].C)
-		mat[k][j] = 1
+		size[j] = w.size(f.st[j].C)
+		mat[k][j] = w.weigh(f.st[j].C) / size[j]
 	}
 	for i := 0; i < k; i++ {
 		p := pullOf(f, &f.st[i])
 		for j := 0; j < k; j++ {
-			mat[i][j] = along(&p.g, &dx[j]) / (rt * weight[j])
+			mat[i][j] = along(&p.g, &dx[j]) / (rt * size[j])
 		}
 		mat[i][k] = p.h / ternary.R
 		if want.restore {
 			mat[i][k+1] = -f.st[i].D / rt
 		}
-		size := 0.0
+		top := 0.0
 		for _, v := range mat[i][:k+1] {
-			size = math.Max(size, math.Abs(v))
+			if v := math.Abs(v); v > top {
+				top = v
+			}
 		}
 		for c := range mat[i] {
-			mat[i][c] /= size
+			mat[i][c] /= top
 		}
 	}
 	mat[k][k+1] = want.lost
@@ -140,7 +142,7 @@ func (w *walk) rates(m *melt, a *active, f *flow, want goal) (r [3]float64, dT f
 		return r, 0, false
 	}
 	for j := 0; j < k; j++ {
-		r[j] = x[j] / weight[j]
+		r[j] = x[j] / size[j]
 	}
 	return r, x[k] * m.T, true
 }

@@ -9,12 +9,25 @@ import (
 
 // dependTol is the share of their size by which compositions may miss a linear
 // dependence that counts as exact.
-const dependTol = 1e-9
+const dependTol = 1e-11
+
+// noPart is the coefficient, relative to the largest, at which a phase takes no
+// part in a reaction.
+const noPart = 1e-13
 
 // nullReaction looks for the one reaction among the parts at T: amounts v with
 // Σ v·c = 0, turned so that it releases heat on cooling and takes it up on
 // heating, and scaled to max |v| = 1. dependent is false when the compositions are independent.
 func (w *walk) nullReaction(parts []tangent.Part, T float64) (v []float64, dependent bool) {
+	v, dependent = w.reactionAmong(parts)
+	if dependent {
+		v = w.turn(parts, v, T)
+	}
+	return v, dependent
+}
+
+// reactionAmong is nullReaction without direction or scale.
+func (w *walk) reactionAmong(parts []tangent.Part) (v []float64, dependent bool) {
 	n := len(parts)
 	// Gauss–Jordan on the 3×n matrix of compositions, with full pivoting.
 	a := make([][3]float64, n)
@@ -68,19 +81,21 @@ func (w *walk) nullReaction(parts []tangent.Part, T float64) (v []float64, depen
 			v[c] = -a[free][r]
 		}
 	}
-	return w.turn(parts, v, T), true
+	return v, true
 }
 
 // turn gives a reaction the direction in which it runs, and unit size.
 func (w *walk) turn(parts []tangent.Part, v []float64, T float64) []float64 {
 	entropy, size := 0.0, 0.0
+	for _, c := range v {
+		size = math.Max(size, math.Abs(c))
+	}
 	for j, p := range parts {
-		_, s, _ := w.phase(p.State.Phase).Gibbs(p.State.Y, T)
-		entropy += v[j] * s
-		if math.Abs(v[j]) < 1e-10 {
+		if math.Abs(v[j]) < noPart*size {
 			v[j] = 0
 		}
-		size = math.Max(size, math.Abs(v[j]))
+		_, s, _ := w.phase(p.State.Phase).Gibbs(p.State.Y, T)
+		entropy += v[j] * s
 	}
 	if entropy*w.dir < 0 {
 		size = -size

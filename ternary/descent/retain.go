@@ -129,9 +129,17 @@ func (w *walk) outflow(h *holding, d *drain) {
 	}
 }
 
-// pinDraining is pin for an open system, where the contents in contact depend on
-// T: false position on the amount, or the driving force, of the part.
-func (w *walk) pinDraining(a, b *holding, parts []tangent.Part, zero int) (event, bool) {
+// fused stands for the driving force, in RT, of a second composition of a phase
+// where there is none.
+const fused = 1e-9
+
+// pinSlack is by how many kelvin the last digits may move an event.
+const pinSlack = 1e-6
+
+// pinAlong is pin for an open system, where the contents in contact depend on T,
+// and for a second liquid close to the first: false position on the amount, or
+// the driving force, of the part.
+func (w *walk) pinAlong(a, b *holding, parts []tangent.Part, zero int) (event, bool) {
 	arrives := zero >= len(a.q.Parts)
 	state := parts[zero].State
 	value := func(h *holding) float64 {
@@ -139,6 +147,10 @@ func (w *walk) pinDraining(a, b *holding, parts []tangent.Part, zero int) (event
 			return -h.q.Parts[zero].Mole
 		}
 		d := w.phase(state.Phase).DriveFrom(&h.q.Mu, h.q.T, state.Y)
+		all := append(cloned(h.q).Parts, tangent.Part{State: gibbs.State{Phase: state.Phase, Y: d.Y}})
+		if collapsed(all, len(all)-1) {
+			return -fused
+		}
 		state.Y, state.C = d.Y, d.C
 		return d.D / (ternary.R * h.q.T)
 	}
@@ -148,12 +160,12 @@ func (w *walk) pinDraining(a, b *holding, parts []tangent.Part, zero int) (event
 	if flo >= 0 {
 		at, fhi, lo, hi = *a, 0, a.q.T, a.q.T
 	}
-	for round := 0; round < 60 && fhi > 1e-14 && math.Abs(hi-lo) > 1e-13*lo; round++ {
+	for round := 0; round < 150 && fhi > 1e-14 && math.Abs(hi-lo) > 1e-13*lo; round++ {
 		T := hi - fhi*(hi-lo)/(fhi-flo)
 		if round%5 == 4 || (T-lo)*(T-hi) >= 0 {
 			T = (lo + hi) / 2
 		}
-		m, err := w.drainTo(*a, T)
+		m, err := w.move(*a, T)
 		if err != nil {
 			return event{}, false
 		}
@@ -180,6 +192,10 @@ func (w *walk) pinDraining(a, b *holding, parts []tangent.Part, zero int) (event
 	lost := at.lost
 	if at.q == a.q {
 		lost = drain{}
+	}
+	// the last digits, with what is in contact held fixed
+	if e, err := tangent.Event(w.sys, q.Bulk, q.T, q.Mu, q.Parts, zero); err == nil && math.Abs(e.T-q.T) < pinSlack && !collapsed(e.Parts, zero) {
+		q = e
 	}
 	return event{q: q, part: zero, lost: lost}, true
 }

@@ -16,7 +16,7 @@ const fracOver = 1e-11
 func (w *walk) excess(m *melt, a *active, f *flow) (float64, gibbs.State) {
 	over, who := math.Inf(-1), gibbs.State{}
 	for j := 0; j < a.count; j++ {
-		if v := -f.r[j] * w.weigh(f.st[j].C); v > over {
+		if v := -f.r[j] * w.size(f.st[j].C); v > over {
 			over, who = v, gibbs.State{Phase: a.phase[j], Y: f.st[j].Y, C: f.st[j].C}
 		}
 	}
@@ -114,9 +114,7 @@ func (w *walk) stageEvent(m *melt, a *active, f *flow, step float64) (at melt, b
 			h = (lo + hi) / 2
 		}
 	}
-	for j := 0; j < b.count; j++ {
-		saturated = append(saturated, w.activeState(&b, j))
-	}
+	saturated = w.activeStates(&b)
 	if who.Phase == gibbs.Liquid || b.branch(who.Phase, &who.Y) < 0 {
 		saturated = append(saturated, who)
 	}
@@ -125,4 +123,12 @@ func (w *walk) stageEvent(m *melt, a *active, f *flow, step float64) (at melt, b
 
 func (w *walk) activeState(a *active, j int) gibbs.State {
 	return gibbs.State{Phase: a.phase[j], Y: a.y[j], C: w.sys.Solids[a.phase[j]].Contents(a.y[j])}
+}
+
+func (w *walk) activeStates(a *active) []gibbs.State {
+	out := make([]gibbs.State, 0, 4)
+	for j := 0; j < a.count; j++ {
+		out = append(out, w.activeState(a, j))
+	}
+	return out
 }

@@ -67,7 +67,7 @@ type saturated struct {
 func (e *engine) saturation(phase int, c *column, hint saturated) saturated {
 	p := e.sys.Solids[phase]
 	if p.Stoichiometric() {
-		return e.saturationPure(p, c)
+		return e.saturationPure(p, c, hint.T)
 	}
 	T := hint.T
 	if !(T > e.tLow && T < e.tCap) {
@@ -103,8 +103,9 @@ func (e *engine) drive(p *gibbs.Phase, c *column, T float64) gibbs.Drive {
 	return p.Drive(&mu, T)
 }
 
-// saturationPure solves α + βT + γT ln T = 0 for a stoichiometric phase.
-func (e *engine) saturationPure(p *gibbs.Phase, c *column) saturated {
+// saturationPure solves α + βT + γT ln T = 0 for a stoichiometric phase, by
+// Newton's method from T if that is within the limits.
+func (e *engine) saturationPure(p *gibbs.Phase, c *column, T float64) saturated {
 	m := &p.Members[0]
 	f := gibbs.TFunc{A: -m.G.A, B: -m.G.B, C: -m.G.C}
 	above := false
@@ -132,13 +133,16 @@ func (e *engine) saturationPure(p *gibbs.Phase, c *column) saturated {
 		}
 		return saturated{T: math.Inf(-1)}
 	}
-	T := e.tRef
+	if !(T > e.tLow && T < e.tCap) {
+		T = e.tRef
+	}
 	for round := 0; round < 40; round++ {
-		s := f.Slope(T)
+		ln := math.Log(T)
+		s := f.B + f.C*(1+ln)
 		if s >= 0 {
 			break
 		}
-		next := math.Max(0.5*T, math.Min(T-f.At(T)/s, 1.5*T))
+		next := math.Max(0.5*T, math.Min(T-(f.A+T*(f.B+f.C*ln))/s, 1.5*T))
 		if next < e.tLow {
 			break
 		}
