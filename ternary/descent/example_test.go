@@ -1,0 +1,46 @@
+package descent_test
+
+import (
+	"fmt"
+
+	"thalweg/systems"
+	"thalweg/ternary"
+	"thalweg/ternary/descent"
+)
+
+// What an invented melt of 30 wt% diopside, 35 albite and 35 anorthite does when
+// its crystals are taken away.
+func ExampleFollow() {
+	f, err := systems.Builtin("di-ab-an")
+	if err != nil {
+		fmt.Println(err)
+		return
+	}
+	sys, err := f.AtReference(nil)
+	if err != nil {
+		fmt.Println(err)
+		return
+	}
+	x, err := sys.Components.Composition([3]float64{30, 35, 35}, ternary.Mass)
+	if err != nil {
+		fmt.Println(err)
+		return
+	}
+	p, err := descent.Follow(sys, x, descent.Options{Mode: descent.Fractional})
+	if err != nil {
+		fmt.Println(err)
+		return
+	}
+	for _, s := range p.Steps {
+		if s.Event != "" {
+			fmt.Printf("%.1f °C, %.0f %% melt: %s\n", s.T-ternary.ZeroCelsius, 100*s.MeltMass, s.Event)
+		}
+	}
+	fmt.Println(p.Checks.Passed)
+	// Output:
+	// 1326.7 °C, 100 % melt: Pl in
+	// 1233.5 °C, 77 % melt: Di in
+	// 1089.0 °C, 3 % melt: the rest crystallises without change
+	// 1089.0 °C, 0 % melt: L out
+	// true
+}
