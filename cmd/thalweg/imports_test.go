@@ -18,9 +18,8 @@ var mayImport = map[string][]string{
 	"ternary/tangent":  {"ternary", "ternary/gibbs"},
 	"ternary/liquidus": {"ternary", "ternary/gibbs"},
 	"ternary/descent":  {"ternary", "ternary/gibbs", "ternary/tangent", "ternary/liquidus"},
-	"ternary/section":  {"ternary", "ternary/gibbs", "ternary/tangent", "ternary/liquidus"},
 	"systems":          {"ternary", "ternary/gibbs"},
-	"render":           {"ternary", "ternary/gibbs", "ternary/liquidus", "ternary/descent", "ternary/section"},
+	"render":           {"ternary", "ternary/gibbs", "ternary/liquidus", "ternary/descent"},
 }
 
 func TestRoomsKnowOnlyThoseBefore(t *testing.T) {

@@ -111,6 +111,11 @@ func (w *walk) cool(h holding) (*tangent.Equilibrium, bool, error) {
 		if removal {
 			return w.takeOut(next.q), false, nil
 		}
+		if w.keep < 1 {
+			if q, done := w.dry(next.q); done {
+				return q, false, nil
+			}
+		}
 		change := math.Abs(w.meltMass(next.q) - w.meltMass(h.q))
 		grow := math.Max(0.3, math.Min(2.5, meltAim/math.Max(change, 1e-4)))
 		step = math.Min(coolMax, step*math.Min(grow, next.rate))

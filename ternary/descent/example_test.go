@@ -33,14 +33,14 @@ func ExampleFollow() {
 	}
 	for _, s := range p.Steps {
 		if s.Event != "" {
-			fmt.Printf("%.1f °C, %.0f %% melt: %s\n", s.T-ternary.ZeroCelsius, 100*s.MeltMass, s.Event)
+			fmt.Printf("%.1f °C: %s\n", s.T-ternary.ZeroCelsius, s.Event)
 		}
 	}
 	fmt.Println(p.Checks.Passed)
 	// Output:
-	// 1326.7 °C, 100 % melt: Pl in
-	// 1233.5 °C, 77 % melt: Di in
-	// 1089.0 °C, 3 % melt: the rest crystallises without change
-	// 1089.0 °C, 0 % melt: L out
+	// 1326.7 °C: Pl in
+	// 1233.5 °C: Di in
+	// 1089.0 °C: the rest crystallises without change
+	// 1089.0 °C: L out
 	// true
 }

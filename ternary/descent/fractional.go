@@ -11,7 +11,7 @@ const (
 	// fracTol is the error aimed at per step of the integration, relative to the
 	// liquid's amount: far below what a figure or a table shows. The masses
 	// balance to rounding whatever it is (see melt).
-	fracTol = 1e-9
+	fracTol = 1e-8
 	// fracFirst and fracMax are the first and the longest step in
 	// u = −ln(mass of liquid), fracLast the longest once the rows are done.
 	fracFirst = 0.05
@@ -27,7 +27,7 @@ const (
 	stillTol = 2e-14
 	// exhausted is the amount, in moles per mole of bulk, at which a component
 	// that a solid solution takes up counts as used up in the liquid.
-	exhausted = 1e-15
+	exhausted = 1e-13
 	// restoreTol is the driving force, in RT, to which solids are held saturated.
 	restoreTol = 1e-13
 )
@@ -71,7 +71,7 @@ func liquidAmong(states []gibbs.State) int {
 // stage integrates one set of forming solids to its end: another solid comes in,
 // one stops forming, or the liquid no longer changes.
 func (w *walk) stage(m *melt, a *active) (saturated []gibbs.State, done bool, err error) {
-	h := fracFirst
+	h, bound := fracFirst, math.Inf(1)
 	var f, g flow
 	var s arc
 	if !w.flowAt(m, a, &f) {
@@ -86,7 +86,7 @@ func (w *walk) stage(m *melt, a *active) (saturated []gibbs.State, done bool, er
 		if w.row < 1 {
 			longest = fracLast
 		}
-		h = math.Min(h, longest)
+		h = math.Min(h, math.Min(longest, 0.8*bound))
 		if h < fracMin {
 			return nil, false, errCoarse
 		}
@@ -95,7 +95,8 @@ func (w *walk) stage(m *melt, a *active) (saturated []gibbs.State, done bool, er
 			if ok {
 				h = math.Min(h/2, grown(h, size, fracTol))
 			} else {
-				h /= 4
+				bound = h // a trace that falls fast makes longer steps unstable
+				h *= 0.7
 			}
 			continue
 		}

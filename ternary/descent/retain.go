@@ -42,6 +42,54 @@ func (s *stack) add(state *gibbs.State, n, h float64) {
 	s.used = true
 }
 
+// dried is the amount of a component in contact, in moles per mole of bulk, that
+// is given up to the removed solids.
+const dried = 1e-13
+
+// dry takes traces of components out of what is in contact, with the solid
+// solution that holds them: retained solids that leave almost nothing behind
+// would otherwise stop the integration. It reports whether it did.
+func (w *walk) dry(q *tangent.Equilibrium) (*tangent.Equilibrium, bool) {
+	after, done := q, false
+	for i, b := range q.Bulk {
+		if !(b > 0 && b < dried) {
+			continue
+		}
+		for _, p := range q.Parts {
+			if p.State.Phase == gibbs.Liquid {
+				continue
+			}
+			for k, e := range w.phase(p.State.Phase).Members {
+				if done || e.C[i] <= 0 {
+					continue
+				}
+				done = true
+				after = cloned(q)
+				s := gibbs.State{Phase: p.State.Phase, C: e.C}
+				s.Y[k] = 1
+				n := b / e.C[i]
+				w.gone.add(&s, n, w.enthalpy(&s, q.T))
+				for l, c := range e.C {
+					after.Bulk[l] -= n * c
+				}
+				after.Bulk[i], after.Mu[i] = 0, math.Inf(-1)
+			}
+		}
+		if !done {
+			continue
+		}
+		kept := after.Parts[:0]
+		for _, p := range after.Parts { // what cannot do without the component goes
+			if p.State.Phase == gibbs.Liquid || !math.IsInf(w.phase(p.State.Phase).Drive(&after.Mu, after.T).D, -1) {
+				kept = append(kept, p)
+			}
+		}
+		after.Parts = kept
+		break
+	}
+	return after, done
+}
+
 // book adds what left in a step to the removed solids.
 func (w *walk) book(q *tangent.Equilibrium, d *drain) {
 	if w.keep >= 1 {

@@ -106,7 +106,7 @@ func (w *walk) stageEvent(m *melt, a *active, f *flow, step float64) (at melt, b
 			}
 			side = 2
 		}
-		if v > 0 && v < 1e-13 || hi-lo < 1e-15 {
+		if v > 0 && v < fracOver/10 || hi-lo < 1e-14 {
 			break
 		}
 		h = hi - fhi*(hi-lo)/(fhi-flo)
