@@ -2,7 +2,6 @@ package descent
 
 import (
 	"errors"
-	"fmt"
 	"math"
 
 	"thalweg/ternary"
@@ -84,12 +83,6 @@ func (w *walk) extractStep(r *residue, h float64) (next residue, size float64, o
 		}
 		q, err := tangent.Event(w.sys, b, last.T, last.Mu, last.Parts, len(last.Parts)-1)
 		if err != nil {
-			if dbg {
-				fmt.Println("rate", h, b, last.T, err)
-				for _, p := range last.Parts {
-					fmt.Println("   ", p)
-				}
-			}
 			return false
 		}
 		last = q
