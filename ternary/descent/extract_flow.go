@@ -184,7 +184,6 @@ func (w *walk) extractEvent(r *residue, step float64) (at residue, gone string, 
 	parts := append(make([]tangent.Part, 0, 5), at.q.Parts[:last]...)
 	if s := w.newcomer(at.q); s != nil {
 		gone = w.symbol(s.Phase) + " in"
-		last++
 		parts = append(parts, tangent.Part{State: *s})
 	}
 	parts = append(parts, at.q.Parts[len(at.q.Parts)-1])
