@@ -18,8 +18,9 @@ var mayImport = map[string][]string{
 	"ternary/tangent":  {"ternary", "ternary/gibbs"},
 	"ternary/liquidus": {"ternary", "ternary/gibbs"},
 	"ternary/descent":  {"ternary", "ternary/gibbs", "ternary/tangent", "ternary/liquidus"},
+	"ternary/section":  {"ternary", "ternary/gibbs", "ternary/tangent"},
 	"systems":          {"ternary", "ternary/gibbs"},
-	"render":           {"ternary", "ternary/gibbs", "ternary/liquidus", "ternary/descent"},
+	"render":           {"ternary", "ternary/gibbs", "ternary/liquidus", "ternary/descent", "ternary/section"},
 }
 
 func TestRoomsKnowOnlyThoseBefore(t *testing.T) {

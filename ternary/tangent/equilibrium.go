@@ -70,6 +70,9 @@ func phaseOf(sys *gibbs.System, i int) *gibbs.Phase {
 // from b are dropped unless a phase holds them with a negative coefficient. The
 // error is a *NotFoundError.
 func Solve(sys *gibbs.System, b ternary.Composition, T float64) (*Equilibrium, error) {
+	if q := liquidAlone(sys, b, T); q != nil {
+		return q, nil
+	}
 	s := newSimplex(sys, b, T)
 	// patience is the violation below which Newton's method is tried next: it
 	// falls when an attempt fails, so that cutting planes go on in between.
@@ -96,6 +99,25 @@ func Solve(sys *gibbs.System, b ternary.Composition, T float64) (*Equilibrium, e
 		patience = worst / 3
 	}
 	return nil, &NotFoundError{T, b, fmt.Sprintf("the cutting planes had not closed after %d rounds", s.rounds)}
+}
+
+// liquidAlone is the equilibrium of a bulk that is all liquid: the plane is that
+// of the liquid itself. nil where another phase, or another liquid, lies above it.
+func liquidAlone(sys *gibbs.System, b ternary.Composition, T float64) *Equilibrium {
+	y := [3]float64(b)
+	for i := range b {
+		if !(b[i] >= 0) || b[i] == 0 && negative(sys, i) {
+			return nil
+		}
+	}
+	var p gibbs.Potentials
+	sys.Liquid.Potentials(&y, T, &p)
+	parts := []Part{{State: gibbs.State{Phase: gibbs.Liquid, Y: y, C: y}, Mole: 1}}
+	m := margin(sys, &p.Mu, T, parts)
+	if _, _, convex := sys.Liquid.Curvature(y, T); !(m <= 0) || !convex {
+		return nil
+	}
+	return &Equilibrium{T: T, Bulk: b, Mu: p.Mu, Parts: parts, Margin: m}
 }
 
 // drives calls f with every local maximum of the driving force of every phase.
