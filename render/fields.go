@@ -17,6 +17,9 @@ func (d *drawing) fields() {
 			continue
 		}
 		if c, ok := tint(f.Solid); ok {
+			if f.TwoLiquids {
+				c = blend(c, Hex("FFFFFF"), 0.55)
+			}
 			var p Path
 			for _, ring := range r.rings {
 				p.Append(Polyline(ring, true))
@@ -75,6 +78,9 @@ func (d *drawing) tints() func(solid int) (Colour, bool) {
 	}
 	for _, c := range d.pr.Curves {
 		a, b := c.Solids[0], c.Solids[1]
+		if b < 0 {
+			continue // a second liquid: the field beyond is the same solid's
+		}
 		near[a][b], near[b][a] = true, true
 	}
 	given, used := make([]int, n), make([]int, len(palette))
@@ -113,24 +119,27 @@ func (d *drawing) nameField(f liquidus.Field, r region) {
 	c, radius := r.pole(0.1)
 	d.poles = append(d.poles, radius)
 	s := d.pr.System.Solids[f.Solid]
-	name := s.Name
+	name, symbol := s.Name, s.Symbol
 	if name == "" {
-		name = s.Symbol
+		name = symbol
+	}
+	if f.TwoLiquids {
+		name, symbol = "two liquids", "2 L"
 	}
 	full := measure(FormulaRuns(name, d.style.Base, Regular))
-	short := measure(FormulaRuns(s.Symbol, d.style.Base, Regular))
+	short := measure(FormulaRuns(symbol, d.style.Base, Regular))
 	l := label{role: "field", name: name, colour: d.style.Text, wordings: []wording{full}, rank: 2}
-	if s.Symbol != name {
+	if symbol != name {
 		l.wordings = append(l.wordings, short)
 	}
 	axis := r.axis()
 	l.spots = d.room(r, c, radius, 0, full, 0, 0)
-	if name != s.Symbol && radius < max(9, full.w) {
+	if name != symbol && radius < max(9, full.w) {
 		l.spots = append(l.spots, d.room(r, c, radius, 1, short, 0, 10)...)
 	}
 	if radius < max(6, 0.6*full.w) {
 		l.spots = append(l.spots, d.room(r, c, radius, 0, full, axis, 13)...)
-		if name != s.Symbol {
+		if name != symbol {
 			l.spots = append(l.spots, d.room(r, c, radius, 1, short, axis, 15)...)
 		}
 		for v, t := range l.wordings {

@@ -220,7 +220,7 @@ func reaction(sys *gibbs.System, n liquidus.Node) string {
 func solidNames(sys *gibbs.System, states []gibbs.State) []string {
 	var out []string
 	for i, s := range states {
-		name := "L"
+		name := "L2" // the liquid of the point itself is L
 		if s.Phase != gibbs.Liquid {
 			name = sys.Solids[s.Phase].Symbol
 		}

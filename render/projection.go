@@ -302,7 +302,11 @@ func (d *drawing) describe(left []string) {
 	seen := map[string]bool{}
 	var names []string
 	for _, f := range d.pr.Fields {
-		if n := sys.Solids[f.Solid].Name; !seen[n] {
+		n := sys.Solids[f.Solid].Name
+		if f.TwoLiquids {
+			n = "two liquids"
+		}
+		if !seen[n] {
 			seen[n] = true
 			names = append(names, n)
 		}

@@ -36,7 +36,11 @@ func (r *liquidusResult) csv() ([]byte, error) {
 	}
 	for i := range p.Fields {
 		f := &p.Fields[i]
-		row("field", "", "peak", r.solid(f.Solid), f.PeakT, f.Peak, "", exact(r.area(f)))
+		kind := "peak"
+		if f.TwoLiquids {
+			kind = "peak, two liquids"
+		}
+		row("field", "", kind, r.solid(f.Solid), f.PeakT, f.Peak, "", exact(r.area(f)))
 	}
 	for _, iso := range p.Isotherms {
 		for k, l := range iso.Lines {

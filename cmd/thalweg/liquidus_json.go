@@ -50,6 +50,7 @@ type pointJSON struct {
 
 type fieldJSON struct {
 	Solid        string    `json:"solid"`
+	FromTwo      bool      `json:"two_liquids,omitempty"`
 	AreaFraction number    `json:"area_fraction"` // of the triangle in the basis in force
 	Peak         peakJSON  `json:"peak"`
 	Outline      []amounts `json:"outline"`
@@ -120,7 +121,7 @@ func (r *liquidusResult) json() *liquidusJSON {
 	}
 	for i := range p.Fields {
 		f := &p.Fields[i]
-		j.Fields = append(j.Fields, fieldJSON{r.solid(f.Solid), number(r.area(f)), peakJSON{number(celsius(f.PeakT)), r.composition(f.Peak)}, r.compositions(f.Outline)})
+		j.Fields = append(j.Fields, fieldJSON{r.solid(f.Solid), f.TwoLiquids, number(r.area(f)), peakJSON{number(celsius(f.PeakT)), r.composition(f.Peak)}, r.compositions(f.Outline)})
 	}
 	options := liquidusOptionsJSON{r.basis.String(), number(r.sys.Pressure / pascal), list(r.sys.Withheld), []number{}}
 	for _, iso := range p.Isotherms {

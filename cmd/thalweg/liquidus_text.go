@@ -206,7 +206,11 @@ func (r *liquidusResult) fieldsText(b *strings.Builder) {
 	t.columns = append(t.columns, r.percentColumns()...)
 	for i := range r.projection.Fields {
 		f := &r.projection.Fields[i]
-		row := []string{r.solid(f.Solid), r.sys.Solids[f.Solid].Name, fixed(100*r.area(f), 1), r.temperature(f.PeakT)}
+		name := r.sys.Solids[f.Solid].Name
+		if f.TwoLiquids {
+			name += " from two liquids"
+		}
+		row := []string{r.solid(f.Solid), name, fixed(100*r.area(f), 1), r.temperature(f.PeakT)}
 		t.row(append(row, r.percents(f.Peak)...)...)
 	}
 	t.write(b)

@@ -91,10 +91,13 @@ func status(complete bool) string {
 	return "incomplete"
 }
 
-// solid is the symbol of a phase.
+// secondLiquid is the symbol of a liquid that coexists with the liquid of a point.
+const secondLiquid = "L2"
+
+// solid is the symbol of a phase that coexists with the liquid.
 func (s *subject) solid(phase int) string {
 	if phase < 0 || phase >= len(s.sys.Solids) {
-		return s.sys.Liquid.Symbol
+		return secondLiquid
 	}
 	return s.sys.Solids[phase].Symbol
 }
