@@ -133,14 +133,14 @@ func (d *drawing) nameField(f liquidus.Field, r region) {
 		l.wordings = append(l.wordings, short)
 	}
 	axis := r.axis()
-	l.spots = d.room(r, c, radius, 0, full, 0, 0)
+	l.spots = room(r, c, radius, 0, full, 0, 0)
 	if name != symbol && radius < max(9, full.w) {
-		l.spots = append(l.spots, d.room(r, c, radius, 1, short, 0, 10)...)
+		l.spots = append(l.spots, room(r, c, radius, 1, short, 0, 10)...)
 	}
 	if radius < max(6, 0.6*full.w) {
-		l.spots = append(l.spots, d.room(r, c, radius, 0, full, axis, 13)...)
+		l.spots = append(l.spots, room(r, c, radius, 0, full, axis, 13)...)
 		if name != symbol {
-			l.spots = append(l.spots, d.room(r, c, radius, 1, short, axis, 15)...)
+			l.spots = append(l.spots, room(r, c, radius, 1, short, axis, 15)...)
 		}
 		for v, t := range l.wordings {
 			for _, p := range leaders(c, 0, v, t, 3, 5, 7, 9, 12, 15, 19, 24, 30) {
@@ -156,7 +156,7 @@ func (d *drawing) nameField(f liquidus.Field, r region) {
 }
 
 // room lists places for a name inside a field, the middle first.
-func (d *drawing) room(r region, c Point, radius float64, variant int, t wording, angle, extra float64) []spot {
+func room(r region, c Point, radius float64, variant int, t wording, angle, extra float64) []spot {
 	cost := func(q Point) float64 { return extra + 4*q.distance(c)/(radius+2) }
 	out := []spot{{variant: variant, c: c, angle: angle, cost: cost(c)}}
 	lo, hi := r.bounds()

@@ -258,7 +258,7 @@ func (d *drawing) unmixed() {
 
 // putWords draws the labels that found a place and returns the names of those
 // that stand nowhere.
-func (d *drawing) putWords() (left []string) {
+func (d *board) putWords() (left []string) {
 	l := d.scene.Layer("labels")
 	stands := map[string]bool{}
 	for _, w := range d.words.labels {

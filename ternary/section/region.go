@@ -39,6 +39,10 @@ func (e *engine) buildRegions(s *Section, spacing float64) {
 		l := f.links[0]
 		r := Region{Phases: []int{l.a.Phase, l.b.Phase}, Outline: f.outline()}
 		r.TieLines = e.spread(f, spacing)
+		for i := range f.links {
+			r.sideA = append(r.sideA, composition(f.links[i].a.C))
+			r.sideB = append(r.sideB, composition(f.links[i].b.C))
+		}
 		s.Regions = append(s.Regions, r)
 	}
 	e.onePhase(s)

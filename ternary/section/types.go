@@ -19,7 +19,13 @@ type Region struct {
 	TieLines []TieLine
 	// Corners are the three phases of a three-phase region.
 	Corners []gibbs.State
+
+	sideA, sideB []ternary.Composition
 }
+
+// Sides are the courses of the two phases of a two-phase region, in the order of
+// its tie lines; nil for other regions.
+func (r *Region) Sides() (a, b []ternary.Composition) { return r.sideA, r.sideB }
 
 // TieLine joins two phases that coexist.
 type TieLine struct{ A, B gibbs.State }
