@@ -119,13 +119,13 @@ func (w *walk) extractStage(r *residue, name string) (gone string, err error) {
 		return w.extractFlow(r, name)
 	}
 	liquid := len(r.q.Parts) - 1
-	if v[liquid] <= 0 {
+	if v[liquid] < 0 {
 		return "", fmt.Errorf("the reaction %s makes no liquid", w.describe(r.q.Parts, v))
 	}
 	w.recordResidue(r, name+", "+w.describe(r.q.Parts, v)+" begins")
 	after, gone := w.react(r.q, v)
 	out := after.Parts[len(after.Parts)-1]
-	r.drawOff(&out.State, out.Mole, w.enthalpy(&out.State, r.q.T))
+	r.drawOff(&out.State, out.Mole, w.enthalpy(&out.State, r.q.T)) // nothing, where one solid turns into another
 	after.Parts[len(after.Parts)-1].Mole = 0
 	for i, c := range out.State.C {
 		after.Bulk[i] -= out.Mole * c

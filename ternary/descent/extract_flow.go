@@ -1,7 +1,6 @@
 package descent
 
 import (
-	"errors"
 	"math"
 
 	"thalweg/ternary"
@@ -39,7 +38,11 @@ func (w *walk) extractFlow(r *residue, name string) (gone string, err error) {
 		if part := w.spent(next.q); part >= 0 || w.newcomer(next.q) != nil {
 			at, name, ok := w.extractEvent(r, step)
 			if !ok {
-				return "", errors.New("an event could not be located")
+				if gone := w.crumble(r, part); gone != "" {
+					return gone, nil
+				}
+				h = step / 3
+				continue
 			}
 			*r = at
 			w.skipRows(w.weigh(r.pool) / w.total)
@@ -60,6 +63,28 @@ func (w *walk) extractFlow(r *residue, name string) (gone string, err error) {
 		}
 	}
 }
+
+// crumble gives the last of a solid solution, where it is that little, to the
+// melt and names it. On the way to nothing its composition changes as a power of
+// its amount, so that the event of its end cannot always be solved for.
+func (w *walk) crumble(r *residue, part int) string {
+	if part < 0 || r.q.Parts[part].Mole > crumb {
+		return ""
+	}
+	q := cloned(r.q)
+	out := q.Parts[part]
+	for i, c := range out.State.C {
+		q.Bulk[i] -= out.Mole * c
+	}
+	q.Parts = append(q.Parts[:part], q.Parts[part+1:]...)
+	r.q = q
+	r.drawOff(&out.State, out.Mole, w.enthalpy(&out.State, q.T))
+	w.skipRows(w.weigh(r.pool) / w.total)
+	return w.symbol(out.State.Phase) + " out"
+}
+
+// crumb is an amount, in moles per mole of bulk, that may be given up as a whole.
+const crumb = 1e-9
 
 // exhaust gives the last trace of a component to the melt: what is left of it
 // falls as a power, at times enormous, of what is left of the whole.

@@ -96,10 +96,10 @@ func (w *walk) bracketSolidus(b ternary.Composition, below, above float64) (r br
 	}
 	step := solidusFirst
 	for r.solid == nil || r.molten == nil {
-		T += dir * step
-		if T < w.low && r.solid == nil {
+		if T == w.low && r.solid == nil {
 			return r, errors.New("there is liquid down to the lower limit of temperature, so that there is no solidus")
 		}
+		T = math.Max(T+dir*step, w.low)
 		if T > w.high {
 			return r, errors.New("nothing melts up to the upper limit of temperature")
 		}
