@@ -113,6 +113,10 @@ func (w *walk) cool(h holding) (*tangent.Equilibrium, bool, error) {
 		}
 		if w.keep < 1 {
 			if q, done := w.dry(next.q); done {
+				if v, dependent := w.nullReaction(q.Parts, q.T); dependent {
+					q, ended := w.runReaction(q, v, "")
+					return q, ended, nil
+				}
 				return q, false, nil
 			}
 		}

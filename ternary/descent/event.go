@@ -180,7 +180,12 @@ func (w *walk) enter(q *tangent.Equilibrium, part int) (*tangent.Equilibrium, bo
 		w.record(q, nil, name)
 		return q, false
 	}
-	w.record(q, nil, name+", "+w.describe(q.Parts, v)+" begins")
+	return w.runReaction(q, v, name+", ")
+}
+
+// runReaction lets a reaction run at constant T until a phase is used up.
+func (w *walk) runReaction(q *tangent.Equilibrium, v []float64, name string) (*tangent.Equilibrium, bool) {
+	w.record(q, nil, name+w.describe(q.Parts, v)+" begins")
 	after, gone := w.react(q, v)
 	w.record(after, nil, gone)
 	w.skipRows(w.meltMass(after))

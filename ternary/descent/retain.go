@@ -44,7 +44,7 @@ func (s *stack) add(state *gibbs.State, n, h float64) {
 
 // dried is the amount of a component in contact, in moles per mole of bulk, that
 // is given up to the removed solids.
-const dried = 1e-13
+const dried = 1e-11
 
 // dry takes traces of components out of what is in contact, with the solid
 // solution that holds them: retained solids that leave almost nothing behind
@@ -80,6 +80,7 @@ func (w *walk) dry(q *tangent.Equilibrium) (*tangent.Equilibrium, bool) {
 		}
 		kept := after.Parts[:0]
 		for _, p := range after.Parts { // what cannot do without the component goes
+			w.rid(&p, i)
 			if p.State.Phase == gibbs.Liquid || !math.IsInf(w.phase(p.State.Phase).Drive(&after.Mu, after.T).D, -1) {
 				kept = append(kept, p)
 			}
@@ -88,6 +89,27 @@ func (w *walk) dry(q *tangent.Equilibrium) (*tangent.Equilibrium, bool) {
 		break
 	}
 	return after, done
+}
+
+// rid takes a component out of a phase, where something is left.
+func (w *walk) rid(part *tangent.Part, component int) {
+	s := &part.State
+	y, sum := s.Y, 0.0
+	p := w.phase(s.Phase)
+	for k, e := range p.Members {
+		if e.C[component] != 0 {
+			y[k] = 0
+		}
+		sum += y[k]
+	}
+	if sum <= 0 {
+		return
+	}
+	for k := range y {
+		y[k] /= sum
+	}
+	s.Y, s.C = y, p.Contents(y)
+	part.Mole *= sum
 }
 
 // book adds what left in a step to the removed solids.
