@@ -3,6 +3,7 @@ package render
 import (
 	"fmt"
 	"math"
+	"strings"
 
 	"thalweg/ternary"
 	"thalweg/ternary/descent"
@@ -17,12 +18,16 @@ const (
 	sampleRadius    = 1.0
 )
 
+// leapDash is the pattern of a leap from one liquid to another, mm.
+var leapDash = []float64{0.5, 0.9}
+
 // trail is a path on the page.
 type trail struct {
 	path   *descent.Path
 	number int
 	colour Colour
 	legs   []arc // of the liquid, from event to event
+	leaps  []segment
 	marks  []trailMark
 	ticks  []trailTick
 	solid  [][]Point // the bulk of the solids
@@ -57,6 +62,11 @@ func (d *drawing) newTrail(i int, p *descent.Path) trail {
 		if s.Event != "" || end || k == 0 {
 			t.note(pts[k], celsius(s.T))
 		}
+		if leaps(p, k) {
+			t.leaps = append(t.leaps, segment{pts[k-1], pts[k]})
+			start = k
+			continue
+		}
 		if k > start && (s.Event != "" || end) {
 			if leg := smooth(pts[start:k+1], false, d.tri.rim()); !leg.empty() && leg.length() > 0.05 {
 				t.legs = append(t.legs, leg)
@@ -69,6 +79,12 @@ func (d *drawing) newTrail(i int, p *descent.Path) trail {
 	return t
 }
 
+// leaps reports that the liquid of step k is not on the way from that of the step
+// before: fractional melting goes on elsewhere.
+func leaps(p *descent.Path, k int) bool {
+	return k > 0 && strings.HasPrefix(p.Steps[k].Event, descent.MeltingGoesOn)
+}
+
 // note records a mark unless one stands there already at that temperature.
 func (t *trail) note(q Point, temp float64) {
 	for _, m := range t.marks {
@@ -79,18 +95,18 @@ func (t *trail) note(q Point, temp float64) {
 	t.marks = append(t.marks, trailMark{q, temp})
 }
 
-// tenths finds where the melt fraction passes 0.9, 0.8, … while the liquid
-// moves. Where it stands still, at an invariant point, there is no place to
+// tenths finds where the melt fraction passes 0.9, 0.8, … up or down while the
+// liquid moves. Where it stands still, at an invariant point, there is no place to
 // tick.
 func (t *trail) tenths(steps []descent.Step, pts []Point, basis ternary.Basis) {
 	for k := 1; k < len(steps); k++ {
 		f0, f1 := melt(steps[k-1], basis), melt(steps[k], basis)
-		if pts[k].distance(pts[k-1]) < 1e-3 || f1 >= f0 {
+		if pts[k].distance(pts[k-1]) < 1e-3 || f1 == f0 {
 			continue
 		}
 		for n := 9; n >= 1; n-- {
 			f := float64(n) / 10
-			if f0 > f && f1 <= f {
+			if f0 > f && f1 <= f || f0 < f && f1 >= f {
 				t.ticks = append(t.ticks, trailTick{pts[k-1].lerp(pts[k], (f0-f)/(f0-f1)), pts[k].minus(pts[k-1]).unit()})
 			}
 		}
@@ -154,6 +170,11 @@ func (t trail) liquid() Path {
 func (d *drawing) liquidPath(t trail) {
 	l := d.scene.Layer("paths")
 	st := d.style
+	for _, q := range t.leaps {
+		line := Polyline([]Point{q.a, q.b}, false)
+		l.Path(PathItem{Path: line, Stroke: st.dashed(st.SolidPath, t.colour, leapDash), Role: "leap"})
+		d.words.lines.add(rigid, straight([]Point{q.a, q.b}).chords(1.5)...)
+	}
 	whole := t.liquid()
 	if whole.Empty() {
 		return
@@ -279,11 +300,12 @@ func (d *drawing) pathArrow(l *Layer, t trail, leg arc) {
 	}
 }
 
-// shared reports whether a boundary curve's arrowhead lies on the leg already.
+// shared reports whether a boundary curve's arrowhead lies on the leg already and
+// points its way.
 func (d *drawing) shared(leg arc) bool {
 	for _, h := range d.heads {
 		w := box{h.tip.minus(h.dir.times(h.length / 2)), h.dir, h.length / 2, 0.1}
-		if len(leg.inside([]box{w})) > 0 && math.Abs(h.dir.cross(leg.nearest(w.c))) < 0.2 {
+		if u := leg.nearest(w.c); len(leg.inside([]box{w})) > 0 && math.Abs(h.dir.cross(u)) < 0.2 && h.dir.dot(u) > 0 {
 			return true
 		}
 	}

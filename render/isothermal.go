@@ -97,7 +97,8 @@ func place(page, part *Scene, x, y float64) {
 // panel draws one section on a page of its own.
 type panel struct {
 	*board
-	s *section.Section
+	s    *section.Section
+	ties []arc
 }
 
 func (f Isothermal) panel(s *section.Section, width float64, letter string) *Scene {
@@ -119,6 +120,7 @@ func (f Isothermal) panel(s *section.Section, width float64, letter string) *Sce
 		p.name(&s.Regions[i])
 	}
 	p.words.solve()
+	p.cutTies()
 	p.putWords()
 	return p.scene
 }
@@ -179,13 +181,28 @@ func (p *panel) region(r *section.Region) {
 			continue
 		}
 		if pts[0].distance(pts[1]) > 0.3 {
-			p.scene.Layer("tie lines").Path(PathItem{Path: Polyline(pts, false), Stroke: st.stroke(st.Isotherm, st.Muted), Role: "tie line"})
+			p.ties = append(p.ties, straight(pts))
 			p.words.lines.add(faint, straight(pts).chords(2.5)...)
 		}
 	}
 	a, b := r.Sides()
 	for _, side := range [][]ternary.Composition{a, b} {
 		p.line("boundaries", distinct(p.tri.all(side), false), false, st.Boundary, st.Line, "phase boundary")
+	}
+}
+
+// cutTies draws the tie lines with gaps where words stand.
+func (p *panel) cutTies() {
+	gaps := p.gaps()
+	l := p.scene.Layer("tie lines")
+	for _, tie := range p.ties {
+		var path Path
+		for _, piece := range tie.without(tie.inside(gaps), 0.7) {
+			path.Append(piece.path())
+		}
+		if !path.Empty() {
+			l.Path(PathItem{Path: path, Stroke: p.style.stroke(p.style.Isotherm, p.style.Muted), Role: "tie line"})
+		}
 	}
 }
 

@@ -153,14 +153,19 @@ func riding(a arc, t wording) []spot {
 	return out
 }
 
-// cutIsotherms draws the isotherms with gaps where words stand.
-func (d *drawing) cutIsotherms() {
-	var gaps []box
-	for _, l := range d.words.labels {
+// gaps are the rooms of the words that were placed, in which fine lines stop.
+func (b *board) gaps() (out []box) {
+	for _, l := range b.words.labels {
 		if l.chosen >= 0 {
-			gaps = append(gaps, l.spots[l.chosen].box.grown(0.45))
+			out = append(out, l.spots[l.chosen].box.grown(0.45))
 		}
 	}
+	return out
+}
+
+// cutIsotherms draws the isotherms with gaps where words stand.
+func (d *drawing) cutIsotherms() {
+	gaps := d.gaps()
 	layer := d.scene.Layer("isotherms")
 	for _, i := range d.iso {
 		var p Path

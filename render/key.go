@@ -3,6 +3,7 @@ package render
 import (
 	"fmt"
 	"math"
+	"slices"
 	"sort"
 	"strings"
 
@@ -216,7 +217,7 @@ func (k *keyMaker) samples() {
 		}
 		p := k.fig.Paths[s.trail]
 		runs := PlainRuns(title, k.style.Base, Bold)
-		runs = append(runs, PlainRuns(", "+string(p.Mode)+" crystallisation", k.style.Base, Regular)...)
+		runs = append(runs, PlainRuns(", "+process(p), k.style.Base, Regular)...)
 		k.table.add(tableLine{gap: keyBlock,
 			entries: []entry{{runs: runs, x: keyIndent, colour: k.style.Text}},
 			symbol: func(l *Layer, at Point) {
@@ -231,6 +232,18 @@ func (k *keyMaker) samples() {
 			break
 		}
 	}
+}
+
+// process names what happens along a path.
+func process(p *descent.Path) string {
+	s := string(p.Mode)
+	if !p.Mode.Melts() {
+		s += " crystallisation"
+	}
+	if p.Mode == descent.Fractional && p.Retain > 0 {
+		s += fmt.Sprintf(", %g of new solids kept", p.Retain)
+	}
+	return s
 }
 
 // events lists T, event and the melt left for each event of a path.
@@ -275,17 +288,29 @@ func (k *keyMaker) pathLines(i int) {
 		k.paragraph(k.words(words), at, gap)
 		k.table.lines[first].symbol = sym
 	}
-	put("liquid; a tick for each tenth crystallised, by "+measure, keyBlock, func(l *Layer, o Point) {
+	done, last := "crystallised", "last liquid; final solid"
+	if k.fig.Paths[i].Mode.Melts() {
+		done, last = "molten", "last liquid; last solid"
+	}
+	put("liquid; a tick for each tenth "+done+", by "+measure, keyBlock, func(l *Layer, o Point) {
 		st.drawPath(l, line(o), i, "key symbol")
 		y := o.Y + XHeight(st.Base)/2
 		for _, x := range []float64{2, 4, 6} {
 			l.Path(PathItem{Path: Polyline([]Point{{o.X + x, y - crossTick}, {o.X + x, y + crossTick}}, false), Stroke: st.stroke(st.Mark, c), Role: "key symbol"})
 		}
 	})
+	for _, p := range k.fig.Paths {
+		if p != nil && slices.ContainsFunc(p.Steps, func(s descent.Step) bool { return strings.HasPrefix(s.Event, descent.MeltingGoesOn) }) {
+			put("leap of the liquid to the next melting", 0.2, func(l *Layer, o Point) {
+				l.Path(PathItem{Path: line(o), Stroke: st.dashed(st.SolidPath, c, leapDash), Role: "key symbol"})
+			})
+			break
+		}
+	}
 	put("bulk of the solids", 0.2, func(l *Layer, o Point) {
 		l.Path(PathItem{Path: line(o), Stroke: st.dashed(st.SolidPath, c, st.solidDash(i)), Role: "key symbol"})
 	})
-	put("last liquid; final solid", 0.2, func(l *Layer, o Point) {
+	put(last, 0.2, func(l *Layer, o Point) {
 		y := o.Y + XHeight(st.Base)/2
 		q := Point{o.X + 2, y}
 		l.Path(PathItem{Path: circle(q, 1.35), Stroke: st.stroke(st.Mark+0.2, c), Role: "key symbol"})

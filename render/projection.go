@@ -322,7 +322,7 @@ func (d *drawing) describe(left []string) {
 	for _, p := range d.placed {
 		if p.trail >= 0 {
 			path := d.fig.Paths[p.trail]
-			fmt.Fprintf(&s, " Path of %s crystallisation from %.0f to %.0f °C.", path.Mode, celsius(path.LiquidT), celsius(path.EndT))
+			fmt.Fprintf(&s, " Path of %s from %.0f to %.0f °C.", process(path), celsius(path.Steps[0].T), celsius(path.EndT))
 		}
 	}
 	if len(left) > 0 {

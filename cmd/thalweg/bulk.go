@@ -7,16 +7,57 @@ import (
 	"strconv"
 	"strings"
 
+	"github.com/spf13/cobra"
+
 	"thalweg/ternary"
 )
 
-// parseBulk reads "Di=30,Ab=35,An=35" in basis b. A component that is not named
-// is 0. sum is the sum as written, for a notice.
-func parseBulk(text string, cs ternary.Components, b ternary.Basis) (x ternary.Composition, sum float64, err error) {
+// bulkFlags say which compositions are followed.
+type bulkFlags struct {
+	Bulk    string // empty if Samples is given
+	Samples string // file; empty if Bulk is given
+}
+
+func (f *bulkFlags) add(cmd *cobra.Command) {
+	fs := cmd.Flags()
+	fs.StringVar(&f.Bulk, "bulk", "", "bulk `composition`, such as Di=30,Ab=35,An=35")
+	fs.StringVar(&f.Samples, "samples", "", "`file` of samples to follow instead of --bulk: CSV with columns name and component symbols")
+	_ = cmd.RegisterFlagCompletionFunc("bulk", completeBulk)
+	_ = cmd.RegisterFlagCompletionFunc("samples", endings("csv"))
+}
+
+func (f *bulkFlags) check(cmd *cobra.Command) error {
+	switch bulk, samples := cmd.Flags().Changed("bulk"), cmd.Flags().Changed("samples"); {
+	case bulk && samples:
+		return &usageError{What: "both --bulk and --samples are given", Remedy: "keep the one that is meant"}
+	case !bulk && !samples:
+		return &usageError{What: "there is no composition to follow", Remedy: "give --bulk Di=30,Ab=35,An=35 or --samples FILE.csv"}
+	}
+	return nil
+}
+
+// compositions are those to follow.
+func (f *bulkFlags) compositions(e *env, s *subject, quiet bool) ([]sample, error) {
+	if f.Samples != "" {
+		return e.loadSamples(f.Samples, s, quiet)
+	}
+	x, sum, err := parseBulk("--bulk", f.Bulk, s.sys.Components, s.basis)
+	if err != nil {
+		return nil, err
+	}
+	if !normalised(sum) {
+		e.notice(quiet, "the bulk composition sums to %s and was normalised to 100 %s", short(sum), s.basis.Unit())
+	}
+	return []sample{{X: x, Sum: sum}}, nil
+}
+
+// parseBulk reads "Di=30,Ab=35,An=35" in basis b, the value of a flag. A component
+// that is not named is 0. sum is the sum as written, for a notice.
+func parseBulk(flag, text string, cs ternary.Components, b ternary.Basis) (x ternary.Composition, sum float64, err error) {
 	var amounts [3]float64
 	var seen [3]bool
 	fail := func(format string, args ...any) (ternary.Composition, float64, error) {
-		return x, 0, &usageError{Where: strings.TrimSpace("--bulk " + text), What: fmt.Sprintf(format, args...), Remedy: "write it like " + exampleBulk(cs)}
+		return x, 0, &usageError{Where: strings.TrimSpace(flag + " " + text), What: fmt.Sprintf(format, args...), Remedy: "write it like " + exampleBulk(cs)}
 	}
 	if strings.TrimSpace(text) == "" {
 		return fail("it is empty")

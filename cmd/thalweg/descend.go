@@ -6,6 +6,7 @@ import (
 
 	"github.com/spf13/cobra"
 
+	"thalweg/ternary"
 	"thalweg/ternary/descent"
 	"thalweg/ternary/liquidus"
 )
@@ -15,9 +16,12 @@ type DescendOptions struct {
 	resultFlags
 	systemFlags
 	figureFlags
-	Bulk    string // empty if Samples is given
-	Mode    string
-	Samples string // file; empty if Bulk is given
+	bulkFlags
+	Mode   string
+	Retain float64
+	Remove []string
+
+	removals []removal
 }
 
 var modes = []string{string(descent.Equilibrium), string(descent.Fractional)}
@@ -33,7 +37,9 @@ which solids come and go, the liquid and the solids at each step, the share of
 melt and the heat released, to the end.
 
 In equilibrium mode the solids stay in contact with the liquid and react with it;
-in fractional mode they leave as they form.
+in fractional mode they leave as they form, or all but the share --retain of
+them. --remove takes solids that are in contact out at a chosen temperature: all
+of them, some (1250:Pl,Di), or a share of each (1250:Pl=0.5).
 
 SYSTEM is a built-in name or the path of a .toml file; without it, ` + defaultSystem + `.
 The bulk is given in the basis in force and normalised, with a notice if it did
@@ -41,6 +47,8 @@ not sum to 100 or 1; a component that is not named is 0. The text result shows
 the events and every tenth of the crystallisation; JSON and CSV hold all steps.`,
 		Example: `  thalweg descend di-ab-an --bulk Di=30,Ab=35,An=35
   thalweg descend di-an-fo --bulk Di=50,An=35,Fo=15 --mode fractional --figure path.pdf --width 84
+  thalweg descend di-ab-an --bulk Di=30,Ab=35,An=35 --mode fractional --retain 0.2
+  thalweg descend di-ab-an --bulk Di=30,Ab=35,An=35 --remove 1280:Pl --remove 1230
   thalweg descend lif-naf-kf --bulk LiF=30,NaF=30,KF=40 --basis mol --format csv --output salt.csv
   thalweg descend di-ab-an --samples samples.csv --format json --output paths.json`,
 		Args: atMostOneSystem,
@@ -59,25 +67,33 @@ the events and every tenth of the crystallisation; JSON and CSV hold all steps.`
 	o.resultFlags.add(cmd)
 	o.systemFlags.add(cmd)
 	o.figureFlags.add(cmd)
+	o.bulkFlags.add(cmd)
 	fs := cmd.Flags()
-	fs.StringVar(&o.Bulk, "bulk", "", "bulk `composition`, such as Di=30,Ab=35,An=35")
 	fs.StringVar(&o.Mode, "mode", modes[0], "`how` solids stay with the liquid: equilibrium or fractional")
-	fs.StringVar(&o.Samples, "samples", "", "`file` of samples to follow instead of --bulk: CSV with columns name and component symbols")
+	fs.Float64Var(&o.Retain, "retain", 0, "in fractional mode, `share` of newly formed solids that stays in contact, 0 to 1")
+	fs.StringArrayVar(&o.Remove, "remove", nil, "take solids out at `T[:SOLID[=SHARE],…]`, T in °C (repeatable)")
 	choices(cmd, "mode", modes...)
-	_ = cmd.RegisterFlagCompletionFunc("bulk", completeBulk)
-	_ = cmd.RegisterFlagCompletionFunc("samples", endings("csv"))
+	choices(cmd, "retain", "0.1", "0.2", "0.5")
+	_ = cmd.RegisterFlagCompletionFunc("remove", cobra.NoFileCompletions)
 	return cmd
 }
 
-func (o *DescendOptions) check(cmd *cobra.Command) error {
-	bulk, samples := cmd.Flags().Changed("bulk"), cmd.Flags().Changed("samples")
-	switch {
-	case bulk && samples:
-		return &usageError{What: "both --bulk and --samples are given", Remedy: "keep the one that is meant"}
-	case !bulk && !samples:
-		return &usageError{What: "there is no composition to follow", Remedy: "give --bulk Di=30,Ab=35,An=35 or --samples FILE.csv"}
-	case o.Mode != modes[0] && o.Mode != modes[1]:
+func (o *DescendOptions) check(cmd *cobra.Command) (err error) {
+	if err := o.bulkFlags.check(cmd); err != nil {
+		return err
+	}
+	switch fractional := o.Mode == modes[1]; {
+	case o.Mode != modes[0] && !fractional:
 		return &usageError{Where: "--mode", What: fmt.Sprintf("%q is unknown", o.Mode), Remedy: "write equilibrium or fractional"}
+	case !(o.Retain >= 0 && o.Retain <= 1):
+		return &usageError{Where: "--retain", What: fmt.Sprintf("%g is not a share", o.Retain), Remedy: "give a number from 0 to 1"}
+	case !fractional && cmd.Flags().Changed("retain"):
+		return &usageError{Where: "--retain", What: "at equilibrium all solids stay in contact", Remedy: "add --mode fractional"}
+	case fractional && o.Retain == 0 && len(o.Remove) > 0:
+		return &usageError{Where: "--remove", What: "in fractional mode solids leave as they form, so that none are left to remove", Remedy: "leave out --mode fractional, or keep some with --retain"}
+	}
+	if o.removals, err = parseRemovals(o.Remove); err != nil {
+		return err
 	}
 	for _, check := range []func() error{o.resultFlags.check, o.systemFlags.check, o.figureFlags.check} {
 		if err := check(); err != nil {
@@ -87,12 +103,14 @@ func (o *DescendOptions) check(cmd *cobra.Command) error {
 	return checkTargets(o.Output, o.Figures, o.System, o.Samples)
 }
 
-// descendResult is what the writers of the verb get.
-type descendResult struct {
+// pathsResult is what the writers of the verbs descend and melt get.
+type pathsResult struct {
 	*subject
-	mode    descent.Mode
-	table   bool // the samples came from a table
-	courses []course
+	mode     descent.Mode
+	retain   float64
+	removals []removal
+	table    bool // the samples came from a table
+	courses  []course
 }
 
 // course is one sample with its path, or the reason why there is none.
@@ -110,14 +128,26 @@ func descendRun(e *env, o *DescendOptions) error {
 	if err != nil {
 		return err
 	}
-	list, err := o.bulks(e, s)
+	opts := descent.Options{Mode: descent.Mode(o.Mode), Retain: o.Retain}
+	if opts.Removals, err = s.removals(o.removals); err != nil {
+		return err
+	}
+	r := &pathsResult{subject: s, mode: opts.Mode, retain: o.Retain, removals: o.removals}
+	return r.run(e, &o.bulkFlags, &o.resultFlags, &o.figureFlags, func(x ternary.Composition) (*descent.Path, error) {
+		return e.follow(s.sys, x, opts)
+	})
+}
+
+// run follows every bulk composition and delivers the result.
+func (r *pathsResult) run(e *env, bulks *bulkFlags, out *resultFlags, fig *figureFlags, follow func(ternary.Composition) (*descent.Path, error)) error {
+	list, err := bulks.compositions(e, r.subject, out.Quiet)
 	if err != nil {
 		return err
 	}
-	r := &descendResult{subject: s, mode: descent.Mode(o.Mode), table: o.Samples != ""}
-	bar := e.startProgress(o.Quiet, "following", len(list))
+	r.table = bulks.Samples != ""
+	bar := e.startProgress(out.Quiet, "following", len(list))
 	for _, q := range list {
-		path, err := e.follow(s.sys, q.X, descent.Options{Mode: r.mode})
+		path, err := follow(q.X)
 		r.courses = append(r.courses, course{q, path, err})
 		bar.step()
 	}
@@ -126,33 +156,33 @@ func descendRun(e *env, o *DescendOptions) error {
 		return fmt.Errorf("the path could not be followed: %w", r.courses[0].err)
 	}
 	reasons := r.reasons()
-	e.noticePaths(r, o.Quiet)
-	result, err := r.encode(o.Format)
+	e.noticePaths(r, out.Quiet)
+	result, err := r.encode(out.Format)
 	if err != nil {
 		return err
 	}
-	err = e.deliver(o.Output, result)
-	more, figureErr := r.draw(e, o)
+	err = e.deliver(out.Output, result)
+	more, figureErr := r.draw(e, fig)
 	return errors.Join(err, figureErr, incomplete(append(reasons, more...)))
 }
 
-// bulks are the compositions to follow.
-func (o *DescendOptions) bulks(e *env, s *subject) ([]sample, error) {
-	if o.Samples != "" {
-		return e.loadSamples(o.Samples, s, o.Quiet)
+// process is what happens, in words.
+func (r *pathsResult) process() string {
+	what := string(r.mode)
+	if !r.mode.Melts() {
+		what += " crystallisation"
 	}
-	x, sum, err := parseBulk(o.Bulk, s.sys.Components, s.basis)
-	if err != nil {
-		return nil, err
+	if r.retain > 0 {
+		what += fmt.Sprintf(" with %s of new solids kept in contact", short(r.retain))
 	}
-	if !normalised(sum) {
-		e.notice(o.Quiet, "the bulk composition sums to %s and was normalised to 100 %s", short(sum), s.basis.Unit())
+	for _, q := range r.removals {
+		what += "; " + q.String()
 	}
-	return []sample{{X: x, Sum: sum}}, nil
+	return what
 }
 
 // reasons says what is wrong with the paths.
-func (r *descendResult) reasons() []string {
+func (r *pathsResult) reasons() []string {
 	var out []string
 	for i := range r.courses {
 		c := &r.courses[i]
@@ -175,7 +205,7 @@ func (r *descendResult) reasons() []string {
 }
 
 // noticePaths says which paths leave the range of the system file.
-func (e *env) noticePaths(r *descendResult, quiet bool) {
+func (e *env) noticePaths(r *pathsResult, quiet bool) {
 	n := 0
 	for _, c := range r.courses {
 		if c.err == nil && (r.outside(c.path.LiquidT) || r.outside(c.path.EndT)) {
@@ -190,7 +220,7 @@ func (e *env) noticePaths(r *descendResult, quiet bool) {
 	}
 }
 
-func (r *descendResult) encode(format string) ([]byte, error) {
+func (r *pathsResult) encode(format string) ([]byte, error) {
 	switch format {
 	case "json":
 		return toJSON(r.json())
@@ -202,7 +232,7 @@ func (r *descendResult) encode(format string) ([]byte, error) {
 
 // draw lays the paths over the projection. more says why the projection is not
 // whole.
-func (r *descendResult) draw(e *env, o *DescendOptions) (more []string, err error) {
+func (r *pathsResult) draw(e *env, o *figureFlags) (more []string, err error) {
 	if len(o.Figures) == 0 {
 		return nil, nil
 	}
@@ -211,7 +241,7 @@ func (r *descendResult) draw(e *env, o *DescendOptions) (more []string, err erro
 	if err != nil {
 		return nil, fmt.Errorf("the projection for the figure: %w", err)
 	}
-	pic := picture{projection: p, provenance: r.provenance("descend, "+o.Mode, "basis "+r.basis.String())}
+	pic := picture{projection: p, provenance: r.provenance(r.process(), "basis "+r.basis.String())}
 	for _, c := range r.courses {
 		if c.err == nil {
 			pic.paths = append(pic.paths, c.path)
@@ -223,5 +253,5 @@ func (r *descendResult) draw(e *env, o *DescendOptions) (more []string, err erro
 	for _, reason := range projectionReasons(p) {
 		more = append(more, "the projection of the figure: "+reason)
 	}
-	return more, o.figureFlags.draw(r.subject, pic)
+	return more, o.draw(r.subject, pic)
 }

@@ -8,7 +8,7 @@ import (
 
 // csv has one record for each step of each path. The columns of a solid are its
 // share of the bulk's mass and its composition.
-func (r *descendResult) csv() ([]byte, error) {
+func (r *pathsResult) csv() ([]byte, error) {
 	var paths []*descent.Path
 	for _, c := range r.courses {
 		if c.err == nil {
@@ -17,6 +17,9 @@ func (r *descendResult) csv() ([]byte, error) {
 	}
 	keys := r.solidKeys(paths)
 	head := append([]string{"sample", "mode", "temperature_C", "event", "melt_fraction_mass"}, r.heads("liquid_")...)
+	if r.mode == descent.FractionalMelting {
+		head = append(head, r.heads("pool_")...)
+	}
 	for _, k := range keys {
 		head = append(append(head, k.name+"_fraction_mass"), r.heads(k.name+"_")...)
 	}
@@ -40,8 +43,11 @@ func (r *descendResult) csv() ([]byte, error) {
 	return t.bytes()
 }
 
-func (r *descendResult) stepCSV(c *course, s *descent.Step, keys []solidKey) []string {
+func (r *pathsResult) stepCSV(c *course, s *descent.Step, keys []solidKey) []string {
 	row := append([]string{c.Name, string(r.mode), exact(celsius(s.T)), s.Event, exact(part(s.MeltMass))}, cells(r.percent(s.Liquid))...)
+	if r.mode == descent.FractionalMelting {
+		row = append(row, cells(r.percent(s.Pool))...)
+	}
 	for _, k := range keys {
 		a, ok := k.find(s)
 		if !ok {

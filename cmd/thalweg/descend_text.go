@@ -9,17 +9,20 @@ import (
 	"thalweg/ternary/descent"
 )
 
-func (r *descendResult) text() string {
+func (r *pathsResult) text() string {
 	var b strings.Builder
 	complete := true
 	for i := range r.courses {
 		complete = complete && r.courses[i].complete()
 	}
 	what := "Line of descent in"
-	if r.table {
+	switch {
+	case r.mode.Melts():
+		what = "Melting in"
+	case r.table:
 		what = "Lines of descent in"
 	}
-	r.heading(&b, what, string(r.mode)+" crystallisation", complete)
+	r.heading(&b, what, r.process(), complete)
 	if r.table {
 		r.summary(&b)
 	}
@@ -31,30 +34,34 @@ func (r *descendResult) text() string {
 }
 
 // summary is one row for each sample.
-func (r *descendResult) summary(b *strings.Builder) {
+func (r *pathsResult) summary(b *strings.Builder) {
 	b.WriteString("\nSamples\n")
 	t := table{columns: append([]column{{head: "name", left: true}}, r.percentColumns()...)}
-	t.columns = append(t.columns, column{head: "liquidus", unit: "°C"}, column{head: "first solid", left: true}, column{head: "end", unit: "°C"}, column{head: "how it ends", left: true})
+	from, first := "liquidus", "first solid"
+	if r.mode.Melts() {
+		from, first = "solidus", "melting first"
+	}
+	t.columns = append(t.columns, column{head: from, unit: "°C"}, column{head: first, left: true}, column{head: "end", unit: "°C"}, column{head: "how it ends", left: true})
 	for _, c := range r.courses {
 		row := append([]string{c.Name}, r.percents(c.X)...)
 		if c.err != nil {
 			t.row(append(row, "", "", "", "NOT FOLLOWED: "+c.err.Error())...)
 			continue
 		}
-		t.row(append(row, r.temperature(c.path.LiquidT), r.firstSolid(c.path), r.temperature(c.path.EndT), c.path.Reason)...)
+		t.row(append(row, r.temperature(c.path.Steps[0].T), r.firstSolid(c.path), r.temperature(c.path.EndT), c.path.Reason)...)
 	}
 	t.write(b)
 }
 
 // firstSolid is what crystallises in the first step.
-func (r *descendResult) firstSolid(p *descent.Path) string {
+func (r *pathsResult) firstSolid(p *descent.Path) string {
 	if len(p.Steps) == 0 {
 		return ""
 	}
 	return r.solids(p.Steps[0].Crystallising)
 }
 
-func (r *descendResult) solids(phases []int) string {
+func (r *pathsResult) solids(phases []int) string {
 	out := make([]string, len(phases))
 	for i, k := range phases {
 		out[i] = r.solid(k)
@@ -62,7 +69,7 @@ func (r *descendResult) solids(phases []int) string {
 	return strings.Join(out, " + ")
 }
 
-func (r *descendResult) courseText(b *strings.Builder, c *course) {
+func (r *pathsResult) courseText(b *strings.Builder, c *course) {
 	b.WriteString("\n")
 	if r.table {
 		fmt.Fprintf(b, "%s\n", c.Name)
@@ -73,7 +80,11 @@ func (r *descendResult) courseText(b *strings.Builder, c *course) {
 	}
 	x := r.percents(c.X)
 	cs := r.sys.Components
-	fmt.Fprintf(b, "Bulk: %s %s, %s %s, %s %s; liquidus %s °C\n", cs[0].Symbol, x[0], cs[1].Symbol, x[1], cs[2].Symbol, x[2], r.temperature(c.path.LiquidT))
+	fmt.Fprintf(b, "Bulk: %s %s, %s %s, %s %s; ", cs[0].Symbol, x[0], cs[1].Symbol, x[1], cs[2].Symbol, x[2])
+	if r.mode.Melts() {
+		fmt.Fprintf(b, "solidus %s °C, ", r.temperature(c.path.Steps[0].T))
+	}
+	fmt.Fprintf(b, "liquidus %s °C\n", r.temperature(c.path.LiquidT))
 	shown := shownSteps(c.path)
 	r.liquidTable(b, c.path, shown)
 	r.solidTable(b, c.path, shown)
@@ -86,29 +97,45 @@ func (r *descendResult) courseText(b *strings.Builder, c *course) {
 }
 
 // shownSteps are the events, the first and last step, and the steps at which
-// another tenth of the bulk has crystallised.
+// another tenth of the bulk has crystallised or melted.
 func shownSteps(p *descent.Path) []int {
 	var out []int
-	tenth := 10
+	most := 0
 	for i, s := range p.Steps {
-		now := int(math.Ceil(10*s.MeltMass - 1e-9))
-		if s.Event != "" || i == 0 || i == len(p.Steps)-1 || now < tenth {
+		done := 1 - s.MeltMass
+		if p.Mode.Melts() {
+			done = s.MeltMass
+		}
+		tenths := int(math.Floor(10*done + 1e-9))
+		if s.Event != "" || i == 0 || i == len(p.Steps)-1 || tenths > most {
 			out = append(out, i)
 		}
-		tenth = min(tenth, now)
+		most = max(most, tenths)
 	}
 	return out
 }
 
-func (r *descendResult) liquidTable(b *strings.Builder, p *descent.Path, shown []int) {
+func (r *pathsResult) liquidTable(b *strings.Builder, p *descent.Path, shown []int) {
 	t := table{columns: []column{{head: "T", unit: "°C"}, {head: "melt", unit: "wt%"}}}
 	for _, c := range r.percentColumns() {
 		t.columns = append(t.columns, column{head: "liq " + c.head, unit: c.unit})
 	}
-	t.columns = append(t.columns, column{head: "heat", unit: "J/g"}, column{head: "forming", left: true}, column{head: "solutions forming", unit: "mol%", left: true}, column{head: "event", left: true})
+	doing := "forming"
+	if p.Mode.Melts() {
+		doing = "melting"
+	}
+	if p.Mode == descent.FractionalMelting {
+		for _, c := range r.percentColumns() {
+			t.columns = append(t.columns, column{head: "all " + c.head, unit: c.unit})
+		}
+	}
+	t.columns = append(t.columns, column{head: "heat", unit: "J/g"}, column{head: doing, left: true}, column{head: "solutions " + doing, unit: "mol%", left: true}, column{head: "event", left: true})
 	for _, i := range shown {
 		s := &p.Steps[i]
 		row := append([]string{r.temperature(s.T), fixed(100*s.MeltMass, 1)}, r.percents(s.Liquid)...)
+		if p.Mode == descent.FractionalMelting {
+			row = append(row, r.percents(s.Pool)...)
+		}
 		t.row(append(row, fixed(s.Heat, 1), r.solids(s.Crystallising), r.solutions(s.Instant), s.Event)...)
 	}
 	t.write(b)
@@ -116,14 +143,19 @@ func (r *descendResult) liquidTable(b *strings.Builder, p *descent.Path, shown [
 
 // solidTable gives what has crystallised: in fractional mode the solids removed
 // so far, with their mean composition.
-func (r *descendResult) solidTable(b *strings.Builder, p *descent.Path, shown []int) {
+func (r *pathsResult) solidTable(b *strings.Builder, p *descent.Path, shown []int) {
 	keys := r.solidKeys([]*descent.Path{p})
 	if len(keys) == 0 {
 		return
 	}
 	what := "Solids in contact with the liquid"
-	if p.Mode == descent.Fractional {
+	switch {
+	case p.Mode == descent.FractionalMelting:
+		what = "Solids left"
+	case p.Mode == descent.Fractional && r.retain == 0:
 		what = "Solids removed so far, mean composition"
+	case r.retain > 0 || len(r.removals) > 0:
+		what = "Solids made so far, in contact or removed, mean composition"
 	}
 	fmt.Fprintf(b, "%s\n", what)
 	t := table{columns: []column{{head: "T", unit: "°C"}}}
@@ -169,7 +201,7 @@ func (k solidKey) find(s *descent.Step) (descent.Amount, bool) {
 }
 
 // solidKeys are the solids that appear in the paths, in the order of the system.
-func (r *descendResult) solidKeys(paths []*descent.Path) []solidKey {
+func (r *pathsResult) solidKeys(paths []*descent.Path) []solidKey {
 	most := make([]int, len(r.sys.Solids))
 	for _, p := range paths {
 		for _, s := range p.Steps {

@@ -48,6 +48,12 @@ func (f *figureFlags) draw(s *subject, p picture) error {
 		fig.Samples = append(fig.Samples, render.Sample{Name: q.Name, Composition: q.X})
 	}
 	scene, err := fig.Scene()
+	return f.write(s, scene, err)
+}
+
+// write writes a scene to every file that was asked for; err is what its making
+// said.
+func (f *figureFlags) write(s *subject, scene *render.Scene, err error) error {
 	if err != nil {
 		return figureError(err)
 	}

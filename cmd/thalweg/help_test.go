@@ -66,8 +66,8 @@ func TestHelp(t *testing.T) {
 			}
 		}
 	}
-	if n != 4 {
-		t.Errorf("%d verbs have examples, want 4", n)
+	if n < 7 {
+		t.Errorf("only %d verbs have examples", n)
 	}
 }
 

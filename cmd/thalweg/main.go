@@ -13,6 +13,7 @@ import (
 	"thalweg/ternary/descent"
 	"thalweg/ternary/gibbs"
 	"thalweg/ternary/liquidus"
+	"thalweg/ternary/section"
 )
 
 // program is the name under which the command speaks of itself.
@@ -27,10 +28,15 @@ type env struct {
 	version  string
 	compute  func(*gibbs.System, liquidus.Options) (*liquidus.Projection, error)
 	follow   func(*gibbs.System, ternary.Composition, descent.Options) (*descent.Path, error)
+	melt     func(*gibbs.System, ternary.Composition, descent.MeltOptions) (*descent.Path, error)
+	cut      func(*gibbs.System, float64) (*section.Section, error)
 }
 
 func newEnv(out, err io.Writer) *env {
-	return &env{out: out, err: err, version: buildVersion(), compute: liquidus.Compute, follow: descent.Follow}
+	return &env{out: out, err: err, version: buildVersion(), compute: liquidus.Compute, follow: descent.Follow, melt: descent.Melt,
+		cut: func(sys *gibbs.System, T float64) (*section.Section, error) {
+			return section.Compute(sys, T, section.Options{})
+		}}
 }
 
 func main() {

@@ -406,12 +406,12 @@ func TestParseBulk(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	x, sum, err := parseBulk(" NaF = 2 , KF=6", f.Components, ternary.Mole)
+	x, sum, err := parseBulk("--bulk", " NaF = 2 , KF=6", f.Components, ternary.Mole)
 	if err != nil || sum != 8 || x != (ternary.Composition{0, 0.25, 0.75}) {
 		t.Errorf("mol: %v, %v, %v", x, sum, err)
 	}
 	// 41.988 g of NaF and 58.096 g of KF are a mole each (IUPAC 2021 abridged).
-	x, _, err = parseBulk("NaF=41.988,KF=58.096", f.Components, ternary.Mass)
+	x, _, err = parseBulk("--bulk", "NaF=41.988,KF=58.096", f.Components, ternary.Mass)
 	if err != nil || math.Abs(x[1]-0.5) > 1e-5 || x[0] != 0 {
 		t.Errorf("wt: %v, %v", x, err)
 	}

@@ -46,7 +46,8 @@ func NewCmdRoot(e *env) *cobra.Command {
 		return &usageError{What: err.Error(), Remedy: seeHelp(c), Err: err}
 	})
 	cmd.SetVersionTemplate("{{.Name}} {{.Version}}\n")
-	cmd.AddCommand(NewCmdSystems(e, nil), NewCmdShow(e, nil), NewCmdLiquidus(e, nil), NewCmdDescend(e, nil))
+	cmd.AddCommand(NewCmdSystems(e, nil), NewCmdShow(e, nil), NewCmdLiquidus(e, nil), NewCmdDescend(e, nil), NewCmdMelt(e, nil),
+		NewCmdSection(e, nil), NewCmdAffinity(e, nil))
 	return cmd
 }
 
@@ -59,11 +60,23 @@ func knownVerb(cmd *cobra.Command, args []string) error {
 	if cmd.SuggestionsMinimumDistance <= 0 {
 		cmd.SuggestionsMinimumDistance = 2
 	}
-	remedy := "the verbs are systems, show, liquidus and descend"
+	remedy := "the verbs are " + verbList(cmd)
 	if near := cmd.SuggestionsFor(args[0]); len(near) > 0 {
 		remedy = "did you mean " + strings.Join(near, " or ") + "?"
 	}
 	return &usageError{What: fmt.Sprintf("%q is not a verb of %s", args[0], program), Remedy: remedy}
+}
+
+// verbList names the verbs that do the program's work.
+func verbList(root *cobra.Command) string {
+	var names []string
+	for _, c := range root.Commands() {
+		if c.Example != "" { // the others are made by the library
+			names = append(names, c.Name())
+		}
+	}
+	last := len(names) - 1
+	return strings.Join(names[:last], ", ") + " and " + names[last]
 }
 
 // atMostOneSystem is the Args function of the verbs that take a system.

@@ -29,6 +29,10 @@ const (
 	leftTol = 1e-12
 )
 
+// MeltingGoesOn begins the event at which fractional melting starts anew, at a
+// higher temperature and from another liquid.
+const MeltingGoesOn = "melting goes on"
+
 // extract follows fractional melting from the solidus. Each stage is one
 // assemblage: at an invariant point a reaction at constant T, else a
 // differential equation for what is left. When a solid is used up the rest melts
@@ -56,7 +60,7 @@ func (w *walk) extract(first *tangent.Equilibrium) error {
 		name = gone
 		if q.T > T+1e-7 {
 			w.recordResidue(&r, gone)
-			name = "melting goes on"
+			name = MeltingGoesOn
 		}
 		r.q = q
 	}
