@@ -136,4 +136,3 @@ func (s *subject) share(q *tangent.Equilibrium, p *tangent.Part) (mass, mole flo
 	sum := func(c [3]float64) float64 { return c[0] + c[1] + c[2] }
 	return p.Mole * weigh(p.State.C) / weigh(q.Bulk), p.Mole * sum(p.State.C) / sum(q.Bulk)
 }
-
