@@ -23,6 +23,17 @@ const (
 	// flatTol is the curvature, relative to that of ideal mixing, below which the
 	// phase counts as not convex and Newton's step is replaced by an uphill one.
 	flatTol = 1e-8
+	// hollowTol is the least curvature, relative to that of ideal mixing, that an
+	// uphill step assumes.
+	hollowTol = 0.01
+	// driveLeap is the longest step in a log-ratio.
+	driveLeap = 3
+	// vanished is a fraction so small that it does not matter how small it is: a
+	// plane may ask for less than a number can hold.
+	vanished = 1e-40
+	// excluded is how far below another, in RT per site, an end-member is taken
+	// for absent.
+	excluded = 1000
 	// driveRounds bounds Newton's iteration; it takes 3 to 8 in practice.
 	driveRounds = 60
 )
@@ -42,6 +53,17 @@ func (p *Phase) gaps(mu *[3]float64, T float64) (d [3]float64) {
 		}
 		if math.IsNaN(d[k]) { // at an apex: +Inf and −Inf; what is absent cannot be made
 			d[k] = math.Inf(-1)
+		}
+	}
+	if n := len(p.Members); n > 1 {
+		top := math.Max(d[0], d[1])
+		if n == 3 {
+			top = math.Max(top, d[2])
+		}
+		for k := range p.Members {
+			if d[k] < top-excluded*p.Mixing.Sites*rGas*T {
+				d[k] = math.Inf(-1) // its fraction would be less than a number can hold
+			}
 		}
 	}
 	return d
@@ -206,13 +228,13 @@ func (p *Phase) climb(d *[3]float64, y [3]float64, T float64) Drive {
 	h := p.height(d, &y, srt, w)
 	for round := 0; round < driveRounds; round++ {
 		step, size := p.newton(d, &y, srt, w, base, idx, free)
+		if size > driveLeap {
+			size = tame(&step, &y, idx, free)
+		}
 		if size <= driveTol {
 			break
 		}
 		scale := 1.0
-		if size > 3 {
-			scale = 3 / size
-		}
 		if size < driveSure {
 			y = shift(y, base, idx, free, step, 1)
 			h = p.height(d, &y, srt, w)
@@ -234,6 +256,20 @@ func (p *Phase) climb(d *[3]float64, y [3]float64, T float64) Drive {
 		}
 	}
 	return p.finish(d, y, T)
+}
+
+// tame bounds a step in each log-ratio by itself, so that a member that is all but
+// excluded does not hold up the others, and leaves alone what has vanished. It
+// returns the largest entry.
+func tame(step *[2]float64, y *[3]float64, idx [2]int, free int) (size float64) {
+	for a := 0; a < free; a++ {
+		if step[a] < 0 && y[idx[a]] < vanished {
+			step[a] = 0
+		}
+		step[a] = math.Max(-driveLeap, math.Min(driveLeap, step[a]))
+		size = math.Max(size, math.Abs(step[a]))
+	}
+	return size
 }
 
 // begin prepares the start of a climb: members at −Inf are taken out, members
@@ -342,7 +378,7 @@ func (p *Phase) newton(d, y *[3]float64, srt float64, w weights, base int, idx [
 		if j[0][0] > flatTol*srt {
 			step[0] = f[0] / j[0][0]
 		} else {
-			step[0] = f[0] / srt
+			step[0] = f[0] / math.Max(-j[0][0], hollowTol*srt)
 		}
 		return step, math.Abs(step[0])
 	}
@@ -351,9 +387,41 @@ func (p *Phase) newton(d, y *[3]float64, srt float64, w weights, base int, idx [
 		step[0] = (f[0]*j[1][1] - f[1]*j[0][1]) / det
 		step[1] = (f[1]*j[0][0] - f[0]*j[1][0]) / det
 	} else {
-		step[0], step[1] = f[0]/srt, f[1]/srt
+		step = uphill(&ex, y, srt, base, idx, f)
 	}
 	return step, math.Max(math.Abs(step[0]), math.Abs(step[1]))
+}
+
+// uphill is Newton's step with every principal curvature, relative to that of
+// ideal mixing, made positive: up a slope as steep as a hollow is deep. In the
+// log-ratios η, with M = ∂y/∂η = L·Lᵀ and A the second derivatives of G in y, it
+// solves |Lᵀ·A·L|·u = Lᵀ·f, η = L⁻ᵀ·u.
+func uphill(ex *excess, y *[3]float64, srt float64, base int, idx [2]int, f [2]float64) (step [2]float64) {
+	a, b := idx[0], idx[1]
+	h := &ex.h
+	ab := h[a][b] - h[a][base] - h[base][b] + h[base][base] + srt/y[base]
+	aa := h[a][a] - 2*h[a][base] + h[base][base] + srt/y[base] + srt/y[a]
+	bb := h[b][b] - 2*h[b][base] + h[base][base] + srt/y[base] + srt/y[b]
+	l00 := math.Sqrt(y[a] * (1 - y[a]))
+	l10 := -y[a] * y[b] / l00
+	l11 := math.Sqrt(math.Max(y[b]*(1-y[b])-l10*l10, 1e-300))
+	// A·L, then Lᵀ·A·L
+	p00, p01 := aa*l00+ab*l10, ab*l11
+	p10, p11 := ab*l00+bb*l10, bb*l11
+	q00, q01, q11 := l00*p00+l10*p10, l00*p01+l10*p11, l11*p11
+	g0, g1 := l00*f[0]+l10*f[1], l11*f[1]
+	mean, diff := (q00+q11)/2, (q00-q11)/2
+	r := math.Hypot(diff, q01)
+	// principal directions (c, s) and (−s, c)
+	theta := math.Atan2(q01, diff) / 2
+	c, s := math.Cos(theta), math.Sin(theta)
+	u, v := c*g0+s*g1, -s*g0+c*g1
+	u /= math.Max(math.Abs(mean+r), hollowTol*srt)
+	v /= math.Max(math.Abs(mean-r), hollowTol*srt)
+	u, v = c*u-s*v, s*u+c*v
+	step[1] = v / l11
+	step[0] = (u - l10*step[1]) / l00
+	return step
 }
 
 // shift multiplies the ratios to the base by exp(scale·step).

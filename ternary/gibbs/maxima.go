@@ -151,8 +151,8 @@ func (p *Phase) settled(d *[3]float64, y [3]float64, T float64) bool {
 			free++
 		}
 	}
-	_, size := p.newton(d, &y, p.Mixing.Sites*rGas*T, atT(T), base, idx, free)
-	return size < 1e-6
+	step, _ := p.newton(d, &y, p.Mixing.Sites*rGas*T, atT(T), base, idx, free)
+	return tame(&step, &y, idx, free) < 1e-6
 }
 
 func near(a, b [3]float64) bool {

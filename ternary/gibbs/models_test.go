@@ -494,3 +494,29 @@ func BenchmarkPotentials(b *testing.B) {
 		c.p.Potentials(&y, 1500, &q)
 	}
 }
+
+// A plane that all but excludes one end-member hides none of the maxima: they are
+// those of the phase without it.
+func TestMaximaOfAnAbsentMember(t *testing.T) {
+	const T, W = 900.0, 20000.0
+	pair := Pair{0, 1, []TFunc{{A: W}}}
+	two := (&Phase{Members: []EndMember{{C: ternary.Apex(0)}, {C: ternary.Apex(1)}}, Mixing: Mixing{Pairs: []Pair{pair}}}).Prepare()
+	three := (&Phase{
+		Members: []EndMember{{C: ternary.Apex(0)}, {C: ternary.Apex(1)}, {C: ternary.Apex(2)}},
+		Mixing:  Mixing{Pairs: []Pair{pair, {0, 2, []TFunc{{A: -8000}}}, {1, 2, []TFunc{{A: 6000}, {A: 2000}}}}},
+	}).Prepare()
+	for _, deep := range []float64{-1e6, -1.3e7, -1e9, math.Inf(-1)} {
+		mu := [3]float64{0, 500, deep}
+		want := two.Maxima(&mu, T)
+		got := three.Maxima(&mu, T)
+		if len(want) != 2 || len(got) != len(want) {
+			t.Errorf("μ = %g: %d maxima, without the third member %d", deep, len(got), len(want))
+			continue
+		}
+		for i := range got {
+			if math.Abs(got[i].D-want[i].D) > 1e-8 || math.Abs(got[i].Y[0]-want[i].Y[0]) > 1e-8 {
+				t.Errorf("μ = %g: D = %.9g at y = %.9f, without the third member %.9g at %.9f", deep, got[i].D, got[i].Y[0], want[i].D, want[i].Y[0])
+			}
+		}
+	}
+}

@@ -128,12 +128,8 @@ func writeReport(t *testing.T, summary string, lines []string) {
 	}
 }
 
-// tortureShare is the share of random systems that must come out complete;
-// tortureSplit the same where the liquid is made to separate.
-const (
-	tortureShare = 0.97
-	tortureSplit = 0.80
-)
+// tortureShare is the share of random systems that must come out complete.
+const tortureShare = 0.97
 
 func TestTorture(t *testing.T) {
 	const n = 200
@@ -159,8 +155,17 @@ func TestTortureTwoLiquids(t *testing.T) {
 	if split < n/2 {
 		t.Errorf("only %d of %d systems have two liquids", split, n)
 	}
-	if float64(complete) < tortureSplit*n {
-		t.Errorf("%d of %d projections complete, want %.0f %%", complete, n, 100*tortureSplit)
+	if float64(complete) < tortureShare*n {
+		t.Errorf("%d of %d projections complete, want %.0f %%", complete, n, 100*tortureShare)
+	}
+}
+
+// The same with solid solutions that unmix.
+func TestTortureSolvus(t *testing.T) {
+	const n = 50
+	complete, _ := torture(t, 1, n, trial.Options{Solvus: true})
+	if float64(complete) < tortureShare*n {
+		t.Errorf("%d of %d projections complete, want %.0f %%", complete, n, 100*tortureShare)
 	}
 }
 
@@ -168,14 +173,21 @@ func TestTortureLong(t *testing.T) {
 	if !*long {
 		t.Skip("run with -long")
 	}
-	for _, o := range []trial.Options{{MaxSolids: 12}, {MaxSolids: 12, Harsh: true}} {
-		const n = 2000
-		complete, _ := torture(t, 1001, n, o)
-		if float64(complete) < tortureShare*n {
-			t.Errorf("%d of %d projections complete, want %.0f %%", complete, n, 100*tortureShare)
+	for _, v := range []struct {
+		n int
+		o trial.Options
+	}{
+		{2000, trial.Options{MaxSolids: 12}},
+		{2000, trial.Options{MaxSolids: 12, Harsh: true}},
+		{500, trial.Options{Unmixing: true}},
+		{500, trial.Options{Solvus: true}},
+		{500, trial.Options{Unmixing: true, Solvus: true}},
+	} {
+		complete, _ := torture(t, 1001, v.n, v.o)
+		if float64(complete) < tortureShare*float64(v.n) {
+			t.Errorf("%+v: %d of %d projections complete, want %.0f %%", v.o, complete, v.n, 100*tortureShare)
 		}
 	}
-	torture(t, 1001, 500, trial.Options{Unmixing: true})
 }
 
 // Isotherms of random systems are whole: none is lost.

@@ -9,6 +9,7 @@ import (
 
 	"thalweg/ternary"
 	"thalweg/ternary/gibbs"
+	"thalweg/ternary/internal/trial"
 	"thalweg/ternary/tangent"
 )
 
@@ -152,6 +153,60 @@ func TestAgainstLinearProgramme(t *testing.T) {
 			}
 		})
 	}
+}
+
+// The same over systems whose liquid separates, whose solid solution unmixes, or
+// both: two forms of one phase are two parts.
+func TestAgainstLinearProgrammeWithGaps(t *testing.T) {
+	const seeds, each = 100, 16
+	forms, n := 0, 0
+	for seed := int64(1); seed <= seeds; seed++ {
+		o := trial.Options{Unmixing: seed%3 != 0, Solvus: seed%3 != 1}
+		sys := trial.System(seed, o)
+		rng := rand.New(rand.NewSource(seed))
+		top := 0.0
+		for k := 0; k < 3; k++ {
+			T, _ := trial.Freezing(sys, ternary.Apex(k), 4000, 100, 1)
+			top = math.Max(top, T)
+		}
+		for i := 0; i < each; i++ {
+			var b ternary.Composition
+			var T float64
+			var q *tangent.Equilibrium
+			var err error
+			// every second comparison looks for an assemblage with two forms
+			for try := 0; try == 0 || i%2 == 1 && try < 40 && err == nil && twoForms(q) == 0; try++ {
+				b, T = inside(rng), top*(0.4+0.8*rng.Float64())
+				q, err = tangent.Solve(sys, b, T)
+			}
+			if err != nil {
+				t.Errorf("seed %d: %v", seed, err)
+				continue
+			}
+			p, amount, err := minimise(sys, b, T)
+			if err != nil {
+				t.Errorf("seed %d, %v, %.2f K: the programme failed: %v", seed, b, T, err)
+				continue
+			}
+			n++
+			forms += twoForms(q)
+			compare(t, sys, q, p, amount)
+		}
+	}
+	t.Logf("%d assemblages compared, %d with two forms of a phase", n, forms)
+	if forms < n/6 {
+		t.Errorf("only %d of %d assemblages hold two forms of a phase", forms, n)
+	}
+}
+
+// twoForms is 1 where a phase is there in two forms, else 0.
+func twoForms(q *tangent.Equilibrium) int {
+	for k := 1; k < len(q.Parts); k++ {
+		if q.Parts[k].State.Phase == q.Parts[k-1].State.Phase {
+			return 1
+		}
+	}
+	return 0
 }
 
 // compare checks one assemblage and returns the bound of its amounts.

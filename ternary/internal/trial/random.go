@@ -15,6 +15,7 @@ type Options struct {
 	Harsh       bool // entropies of compounds drawn freely, stronger attraction: reactions that take up heat
 	NoSolutions bool // stoichiometric solids only
 	Unmixing    bool // two components repel each other so much that most liquids separate
+	Solvus      bool // there is a solid solution, and its members repel each other so much that it unmixes
 }
 
 // Ranges of the invented data.
@@ -143,7 +144,11 @@ func (d *draw) term(lo, hi float64) gibbs.TFunc {
 
 // components adds the solids that stand for the pure components.
 func (d *draw) components() {
-	switch r := d.Float64(); {
+	r := d.Float64()
+	if d.o.Solvus {
+		r = 0.65 + 0.35*r
+	}
+	switch {
 	case d.o.NoSolutions || r < 0.65:
 		for _, e := range d.pure {
 			d.solids = append(d.solids, stoichiometric(e.Symbol, e.C, e.G))
@@ -164,6 +169,12 @@ func (d *draw) solidMixing(members int) (m gibbs.Mixing) {
 	if d.chance(0.3) {
 		m.Sites = 2
 	}
+	if d.o.Solvus {
+		// 2 RT per site is critical; rt belongs to the melting points, so that the
+		// gap reaches up to the liquidus at some seeds and stays below at others
+		m.Pairs = append(m.Pairs, gibbs.Pair{I: 0, J: 1, L: []gibbs.TFunc{d.term(1.2*sites(m), 2.6*sites(m)), d.term(-0.4, 0.4)}})
+		return m
+	}
 	if d.o.Ideal || d.chance(0.5) {
 		return m
 	}
@@ -174,6 +185,8 @@ func (d *draw) solidMixing(members int) (m gibbs.Mixing) {
 	}
 	return m
 }
+
+func sites(m gibbs.Mixing) float64 { return max(1, m.Sites) }
 
 // compound adds a compound of small whole numbers that melts between well below
 // and well above the liquidus of what is there without it: stable congruently,
