@@ -11,12 +11,20 @@ import (
 func (d *drawing) fields() {
 	tint := d.tints()
 	l := d.scene.Layer("fields")
+	if d.fig.shade != nil {
+		d.fig.shade.draw(l, d.tri)
+	}
 	for i, f := range d.pr.Fields {
 		r := d.regions[i]
 		if len(r.rings) == 0 {
 			continue
 		}
-		if c, ok := tint(f.Solid); ok {
+		c, ok := tint(f.Solid)
+		if d.fig.shade != nil {
+			// the temperature of one liquid says nothing where there are two
+			c, ok = white, f.TwoLiquids
+		}
+		if ok {
 			if f.TwoLiquids {
 				c = blend(c, Hex("FFFFFF"), 0.55)
 			}

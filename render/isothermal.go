@@ -2,7 +2,6 @@ package render
 
 import (
 	"fmt"
-	"math"
 	"slices"
 	"strings"
 
@@ -12,7 +11,7 @@ import (
 )
 
 // Isothermal is an isothermal section, or a series of them on one page, composed
-// for print. A zero Style is ColourStyle; a zero WidthMM is DoubleColumn. A series
+// for print. A zero Style is ColourStyle; a zero WidthMM is the style's. A series
 // is set in rows, in the order given, each panel with its letter.
 type Isothermal struct {
 	Sections   []*section.Section
@@ -36,15 +35,13 @@ var isothermalLayers = []string{"regions", "tie lines", "frame", "boundaries", "
 // Scene lays the figure out. It reports a FigureError for a missing section or a
 // width that cannot hold a figure.
 func (f Isothermal) Scene() (*Scene, error) {
-	if f.WidthMM == 0 {
-		f.WidthMM = DoubleColumn
-	}
 	if len(f.Sections) == 0 {
 		return nil, &FigureError{What: "there is no section to draw", Where: "figure", Why: "the list is empty", Remedy: "compute a section first"}
 	}
-	if math.IsNaN(f.WidthMM) || f.WidthMM < minWidth || f.WidthMM > maxWidth {
-		return nil, &FigureError{What: fmt.Sprintf("a width of %g mm cannot be drawn", f.WidthMM), Where: "figure width",
-			Why: fmt.Sprintf("figures are %d to %d mm wide", minWidth, maxWidth), Remedy: "use 84 mm for one column or 174 mm for two"}
+	st := f.Style.orDefault()
+	var err error
+	if f.WidthMM, err = st.drawnWidth(f.WidthMM); err != nil {
+		return nil, err
 	}
 	n := len(f.Sections)
 	across := max(1, min(n, int((f.WidthMM+panelGap)/(panelLeast+panelGap))))
@@ -71,7 +68,7 @@ func (f Isothermal) Scene() (*Scene, error) {
 		place(page, p, x, y)
 	}
 	f.describe(page)
-	return page, nil
+	return page.enlarged(st.zoom()), nil
 }
 
 // place copies a scene's items onto another, moved by x and y.

@@ -38,10 +38,11 @@ type keyMaker struct {
 func newKey(f Figure, st Style, placed []placedSample, width float64) table {
 	k := keyMaker{style: st, pr: f.Projection, fig: f, placed: placed, width: width,
 		tri:   triangle{components: f.Projection.System.Components, basis: f.Basis},
-		table: table{leading: st.leading(), size: st.Base, ruled: &Stroke{Width: st.Rule * mmPerPoint, Colour: st.Muted}}}
+		table: table{leading: st.leading(), size: st.Base, ruled: st.stroke(st.Rule, st.Muted)}}
 	k.nodes()
 	k.samples()
 	k.isotherms()
+	k.shade()
 	k.diamonds()
 	k.solids()
 	return k.table
@@ -326,6 +327,22 @@ func (k *keyMaker) isotherms() {
 		return
 	}
 	k.paragraph(k.words(fmt.Sprintf("isotherms every %g °C", step)), 0, keyBlock)
+}
+
+// shade gives the scale of the shading.
+func (k *keyMaker) shade() {
+	sh := k.fig.shade
+	if sh == nil {
+		return
+	}
+	const bar = 24.0 // mm
+	st := k.style
+	low, high := fmt.Sprintf("%.0f", celsius(sh.low)), fmt.Sprintf("%.0f °C", celsius(sh.high))
+	x := TextWidth(PlainRuns(low, st.Base, Regular)) + 1.5
+	k.paragraph(k.words("fields shaded by the liquidus temperature:"), 0, keyBlock/2)
+	k.table.add(tableLine{entries: []entry{k.text(low, 0, Regular), k.text(high, x+bar+1.5, Regular)}, symbol: func(l *Layer, o Point) {
+		sh.swatch(l, Point{o.X + x, o.Y - 0.2}, bar, CapHeight(st.Base)+0.4, st.stroke(st.Tick, st.Line))
+	}})
 }
 
 // diamonds explains the symbol for the composition of a solid.

@@ -282,7 +282,7 @@ func TestArrowheadsPointDownhill(t *testing.T) {
 	eachFigure(t, func(t *testing.T, d *drawing) {
 		n := 0
 		for _, p := range paths(d.scene, "arrowhead") {
-			if *p.Fill != d.style.Line && d.style.Name != "ink" {
+			if *p.Fill != d.style.Line && !d.style.Ink {
 				continue
 			}
 			pts := p.Path.Flatten(0.01)[0]

@@ -11,8 +11,8 @@ import (
 )
 
 // Figure is a liquidus projection composed for print, with the paths and
-// samples to lay over it. A zero Style is ColourStyle; a zero WidthMM is
-// DoubleColumn. From 130 mm on the key stands beside the triangle, below that
+// samples to lay over it. A zero Style is ColourStyle; a zero WidthMM is the
+// style's. From 130 mm on the key stands beside the triangle, below that
 // under it.
 type Figure struct {
 	Projection *liquidus.Projection
@@ -22,13 +22,28 @@ type Figure struct {
 	Style      Style
 	WidthMM    float64
 	Provenance string // goes into the file's metadata
+
+	shade *shading // nil unless the style shades temperatures
 }
 
 // The narrowest and widest figure, mm.
 const (
-	minWidth = 60
-	maxWidth = 400
+	minWidth = 60.0
+	maxWidth = 400.0
 )
+
+// drawnWidth is the width at which a figure is composed before it is enlarged, mm,
+// from that which is wanted, 0 for the style's.
+func (s Style) drawnWidth(mm float64) (float64, error) {
+	if mm == 0 {
+		mm = s.Width
+	}
+	if least, most := Widths(s); math.IsNaN(mm) || mm < least || mm > most {
+		return 0, &FigureError{What: fmt.Sprintf("a width of %g mm cannot be drawn", mm), Where: "figure width",
+			Why: fmt.Sprintf("figures of this style are %g to %g mm wide", least, most), Remedy: "use 84 mm for one column or 174 mm for two"}
+	}
+	return mm / s.zoom(), nil
+}
 
 // drawing is a figure in the making.
 type drawing struct {
@@ -57,17 +72,22 @@ func (f Figure) Scene() (*Scene, error) {
 	if err != nil {
 		return nil, err
 	}
-	return d.scene, nil
+	return d.scene.enlarged(d.style.zoom()), nil
 }
 
+// draw composes the figure as it is before it is enlarged by the style's Zoom.
 func (f Figure) draw() (*drawing, error) {
-	if f.WidthMM == 0 {
-		f.WidthMM = DoubleColumn
+	st := f.Style.orDefault()
+	var err error
+	if f.WidthMM, err = st.drawnWidth(f.WidthMM); err != nil {
+		return nil, err
 	}
 	if err := f.check(); err != nil {
 		return nil, err
 	}
-	st := f.Style.orDefault()
+	if f.shade, err = newShading(f, st); err != nil {
+		return nil, err
+	}
 	lay := f.layout(st)
 	d := &drawing{board: newBoard(st, lay.tri, f.WidthMM, lay.height, projectionLayers...), fig: f, pr: f.Projection, placed: lay.placed}
 	for _, x := range d.pr.Fields {
@@ -97,10 +117,6 @@ func (f Figure) check() error {
 	if f.Projection == nil || f.Projection.System == nil {
 		return &FigureError{What: "there is no projection to draw", Where: "figure",
 			Why: "the projection or its system is missing", Remedy: "compute the projection first"}
-	}
-	if math.IsNaN(f.WidthMM) || f.WidthMM < minWidth || f.WidthMM > maxWidth {
-		return &FigureError{What: fmt.Sprintf("a width of %g mm cannot be drawn", f.WidthMM), Where: "figure width",
-			Why: fmt.Sprintf("figures are %d to %d mm wide", minWidth, maxWidth), Remedy: "use 84 mm for one column or 174 mm for two"}
 	}
 	for _, s := range f.Samples {
 		if !s.Composition.Inside(1e-6) || math.IsNaN(s.Composition[0]+s.Composition[1]+s.Composition[2]) {

@@ -23,7 +23,8 @@ type Scene struct {
 	Description   string  // text equivalent for readers who cannot see the figure
 	Subject       string
 	Keywords      string
-	Provenance    string // free text put into the metadata: what made the figure from what
+	Provenance    string  // free text put into the metadata: what made the figure from what
+	Origin        *Origin // how to make the figure again, put into the metadata; nil for none
 	Layers        []*Layer
 }
 

@@ -1,7 +1,5 @@
 package render
 
-import "fmt"
-
 // Widths of figures in mm that the styles are made for: one column and two
 // columns. 84 and 174 mm fit Springer's page, and fit into the column of every
 // other publisher looked at.
@@ -13,7 +11,10 @@ const (
 // Style is the look of a figure. Sizes of type and widths of strokes are in pt
 // at printed size. The zero Style stands for ColourStyle.
 type Style struct {
-	Name string
+	Name  string  // of the preset
+	Width float64 // mm, what the preset is made for
+	Zoom  float64 // everything, type and strokes included, is drawn so many times as large; 0 is 1
+	Ink   bool    // black and greys alone
 
 	// Type. Formula subscripts are set at three quarters of the size around
 	// them, so MinText is 6 pt for 8 pt type.
@@ -33,15 +34,16 @@ type Style struct {
 	Line                      Colour // frame, boundary curves, symbols
 	IsothermHot, IsothermCold Colour // the tone of the hottest and of the coldest isotherm
 	Tints                     []Colour
+	Ramp                      []Colour    // for temperatures instead of tints, hottest first; nil for none
 	PathColours               []Colour    // one path after another, in turn
 	PathDashes, SolidDash     [][]float64 // mm on and off; nil is unbroken
 }
 
-// ColourStyle is the house style for print and screen: pale fields, sepia
-// isotherms, one saturated colour for each path.
+// ColourStyle is the house style for print and screen, which the presets adapt:
+// pale fields, sepia isotherms, one saturated colour for each path.
 func ColourStyle() Style {
 	return Style{
-		Name: "colour",
+		Name: DefaultPreset, Width: DoubleColumn,
 		Base: 8, Apex: 9, MinText: 6, MinLine: 0.3,
 		Frame: 0.8, Tick: 0.5, Boundary: 1.1, Polymorph: 0.7,
 		Isotherm: 0.35, IsothermHeavy: 0.65,
@@ -57,32 +59,35 @@ func ColourStyle() Style {
 	}
 }
 
-// InkStyle is for print in black: no tints, greys for the isotherms, paths
-// told apart by their dashes.
-func InkStyle() Style {
-	s := ColourStyle()
-	s.Name = "ink"
-	s.Tints = nil
+// InkStyle is ColourStyle in black and greys.
+func InkStyle() Style { return ColourStyle().Inked() }
+
+// Inked returns the style for print in black: no tints, greys for the isotherms,
+// paths hollow and told apart by the dashes of their cores.
+func (s Style) Inked() Style {
+	s.Ink = true
+	s.Tints, s.Ramp = nil, nil
 	s.Text, s.Muted, s.Line = Hex("000000"), Hex("3C3C3C"), Hex("000000")
 	s.IsothermHot, s.IsothermCold = Hex("8A8A8A"), Hex("2A2A2A")
 	s.PathColours = []Colour{Hex("000000")}
-	s.Path, s.PathCore = 1.9, 0.9
+	s.PathCore = max(0.9, s.MinLine) // as wide as the two lines beside it together
+	s.Path = s.PathCore + max(1, 2*s.MinLine)
 	s.PathDashes = [][]float64{nil, {2.4, 0.8}, {0.9, 0.9}, {4.2, 0.8, 0.8, 0.8}}
 	s.SolidDash = [][]float64{{0.5, 0.7}}
 	return s
 }
 
-// StyleNamed returns the style called "colour" or "ink"; an empty name is
-// "colour".
-func StyleNamed(name string) (Style, error) {
-	switch name {
-	case "", "colour":
-		return ColourStyle(), nil
-	case "ink":
-		return InkStyle(), nil
-	}
-	return Style{}, &FigureError{What: fmt.Sprintf("style %q is unknown", name), Where: "figure style",
-		Why: "only colour and ink are defined", Remedy: "write colour or ink"}
+// rampSteps is the number of steps of the scale of temperatures: each is then
+// smaller than what is seen between neighbouring areas.
+const rampSteps = 32
+
+// Shaded returns the style with fields coloured by the liquidus temperature.
+// Isotherms and numbers are darker, to be read on the deepest shade.
+func (s Style) Shaded() Style {
+	s.Ramp = temperatureRamp(rampSteps)
+	s.Muted = Hex("352F2A")
+	s.IsothermHot, s.IsothermCold = Hex("665848"), Hex("2B2018")
+	return s
 }
 
 func (s Style) orDefault() Style {

@@ -2,6 +2,7 @@ package render
 
 import (
 	"math"
+	"strings"
 	"testing"
 )
 
@@ -56,13 +57,13 @@ func TestStylesKeepContrast(t *testing.T) {
 }
 
 func TestStyleNamed(t *testing.T) {
-	for name, want := range map[string]string{"": "colour", "colour": "colour", "ink": "ink"} {
-		if s, err := StyleNamed(name); err != nil || s.Name != want {
-			t.Errorf("%q gives %q, %v", name, s.Name, err)
+	for name, want := range map[string]float64{"": 174, "single-84": 84, "heavy-185": 185, "slides": 300} {
+		if s, err := StyleNamed(name); err != nil || s.Width != want || name != "" && s.Name != name {
+			t.Errorf("%q gives %q, %g mm wide, %v", name, s.Name, s.Width, err)
 		}
 	}
-	if _, err := StyleNamed("neon"); err == nil {
-		t.Error("an unknown style is accepted")
+	if _, err := StyleNamed("neon"); err == nil || !strings.Contains(err.Error(), "double-190") {
+		t.Errorf("an unknown style: %v", err)
 	}
 }
 

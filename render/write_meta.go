@@ -13,6 +13,8 @@ import (
 type metadata struct {
 	title, description, subject, keywords, provenance, producer string
 
+	origin string // the record that ReadOrigin reads, empty for none
+
 	date time.Time // zero: none
 }
 
@@ -23,14 +25,26 @@ func (s *Scene) metadata(o Options) (metadata, error) {
 		title: clean(s.Title), description: clean(s.Description), subject: clean(s.Subject),
 		keywords: clean(s.Keywords), provenance: clean(s.Provenance), producer: clean(o.Producer),
 	}
-	if v := os.Getenv("SOURCE_DATE_EPOCH"); v != "" {
+	epoch := os.Getenv("SOURCE_DATE_EPOCH")
+	if v := epoch; v != "" {
 		sec, err := strconv.ParseInt(v, 10, 64)
 		if err != nil || sec < 0 || sec > 253402300799 {
 			return m, fmt.Errorf("SOURCE_DATE_EPOCH is %q: it must be whole seconds since 1970, or unset", v)
 		}
 		m.date = time.Unix(sec, 0).UTC()
 	}
-	return m, nil
+	if s.Origin == nil {
+		return m, nil
+	}
+	origin := *s.Origin
+	origin.Epoch = epoch
+	if m.provenance != "" {
+		m.provenance += "; "
+	}
+	m.provenance += clean(origin.words())
+	var err error
+	m.origin, err = origin.record()
+	return m, err
 }
 
 // clean drops what XML cannot hold: control characters other than tab and
@@ -59,7 +73,11 @@ func (m metadata) rdf() string {
 	var b strings.Builder
 	b.WriteString(`<rdf:RDF xmlns:rdf="http://www.w3.org/1999/02/22-rdf-syntax-ns#"` +
 		` xmlns:dc="http://purl.org/dc/elements/1.1/" xmlns:pdf="http://ns.adobe.com/pdf/1.3/"` +
-		` xmlns:xmp="http://ns.adobe.com/xap/1.0/"><rdf:Description rdf:about="">`)
+		` xmlns:xmp="http://ns.adobe.com/xap/1.0/"`)
+	if m.origin != "" {
+		fmt.Fprintf(&b, ` xmlns:thalweg="%s"`, recordSpace)
+	}
+	b.WriteString(`><rdf:Description rdf:about="">`)
 	simple := func(tag, v string) {
 		if v != "" {
 			fmt.Fprintf(&b, "<%s>%s</%s>", tag, escape(v), tag)
@@ -86,6 +104,7 @@ func (m metadata) rdf() string {
 		simple("xmp:CreateDate", d)
 		simple("xmp:ModifyDate", d)
 	}
+	simple("thalweg:"+recordElement, m.origin)
 	b.WriteString("</rdf:Description></rdf:RDF>")
 	return b.String()
 }

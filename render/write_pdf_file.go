@@ -52,8 +52,8 @@ func (f *pdfFile) rawStream(entries string, data []byte) int {
 	return f.add(b.String())
 }
 
-// writeTo writes the file. Its identifier is a hash of everything else, so
-// equal figures have equal files.
+// writeTo writes the file. Its identifier is a hash of everything before it, so
+// equal figures have equal files, and a later change shows.
 func (f *pdfFile) writeTo(w io.Writer, catalog, info int) error {
 	var b bytes.Buffer
 	b.WriteString("%PDF-1.7\n%\xE2\xE3\xCF\xD3\n")
@@ -64,12 +64,12 @@ func (f *pdfFile) writeTo(w io.Writer, catalog, info int) error {
 		b.Write(body)
 		b.WriteString("\nendobj\n")
 	}
-	sum := sha256.Sum256(b.Bytes())
 	start := b.Len()
 	fmt.Fprintf(&b, "xref\n0 %d\n0000000000 65535 f \n", len(offsets)+1)
 	for _, at := range offsets {
 		fmt.Fprintf(&b, "%010d 00000 n \n", at)
 	}
+	sum := sha256.Sum256(b.Bytes())
 	fmt.Fprintf(&b, "trailer\n<< /Size %d /Root %d 0 R /Info %d 0 R /ID [<%X> <%X>] >>\nstartxref\n%d\n%%%%EOF\n",
 		len(offsets)+1, catalog, info, sum[:16], sum[:16], start)
 	_, err := w.Write(b.Bytes())

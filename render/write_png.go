@@ -15,10 +15,12 @@ import (
 	"github.com/tdewolff/canvas/renderers/rasterizer"
 )
 
+// MostDPI is the highest resolution of the png writer, pixels per inch.
+const MostDPI = 4800
+
 // Limits of the png writer.
 const (
 	defaultDPI = 300
-	maxDPI     = 4800
 	maxPixels  = 400e6
 )
 
@@ -41,8 +43,8 @@ func (s *Scene) raster(dpi int) (*image.RGBA, int, error) {
 	if dpi == 0 {
 		dpi = defaultDPI
 	}
-	if dpi < 1 || dpi > maxDPI {
-		return nil, 0, fmt.Errorf("png resolution of %d dpi: use 1 to %d", dpi, maxDPI)
+	if dpi < 1 || dpi > MostDPI {
+		return nil, 0, fmt.Errorf("png resolution of %d dpi: use 1 to %d", dpi, MostDPI)
 	}
 	px := func(mm float64) int { return max(1, int(math.Round(mm/25.4*float64(dpi)))) }
 	w, h := px(s.Width), px(s.Height)
@@ -128,7 +130,7 @@ func insertChunks(w io.Writer, pic []byte, dpi int, m metadata) error {
 	perMetre := uint32(math.Round(float64(dpi) / 0.0254))
 	appendChunk(&b, "pHYs", append(be.AppendUint32(be.AppendUint32(nil, perMetre), perMetre), 1))
 	for _, e := range []struct{ key, value string }{
-		{"Title", m.title}, {"Description", m.description}, {"Software", m.producer}, {"Source", m.provenance},
+		{"Title", m.title}, {"Description", m.description}, {"Software", m.producer}, {"Source", m.provenance}, {recordKey, m.origin},
 	} {
 		if e.value != "" {
 			// keyword, not compressed, no language, no translated keyword

@@ -37,6 +37,7 @@ func writeSVG(w io.Writer, s *Scene, subs []*subset, m metadata, o Options) erro
 		v.printf("</g>\n")
 	}
 	v.printf("</svg>\n")
+	v.b.Write(svgSeal(v.b.Bytes()))
 	_, err := w.Write(v.b.Bytes())
 	return err
 }

@@ -9,21 +9,7 @@ import (
 	"thalweg/ternary/liquidus"
 )
 
-// Widths of figures in mm.
-const (
-	defaultWidth = render.DoubleColumn
-	narrowest    = 60
-	widest       = 400
-)
-
 func figureFormats() []string { return render.Formats() }
-
-func checkStyle(name string) error {
-	if _, err := render.StyleNamed(name); err != nil {
-		return &usageError{Where: "--style", What: fmt.Sprintf("%q is unknown", name), Remedy: "write colour or ink", Err: err}
-	}
-	return nil
-}
 
 // picture is what a figure shows.
 type picture struct {
@@ -39,9 +25,9 @@ func (f *figureFlags) draw(s *subject, p picture) error {
 	if len(f.Figures) == 0 {
 		return nil
 	}
-	style, err := render.StyleNamed(f.Style)
+	style, err := f.look()
 	if err != nil {
-		return badInput(err)
+		return err
 	}
 	fig := render.Figure{Projection: p.projection, Paths: p.paths, Basis: s.basis, Style: style, WidthMM: f.WidthMM, Provenance: p.provenance}
 	for _, q := range p.samples {
@@ -51,15 +37,17 @@ func (f *figureFlags) draw(s *subject, p picture) error {
 	return f.write(s, scene, err)
 }
 
-// write writes a scene to every file that was asked for; err is what its making
-// said.
+// write writes a scene to every file that was asked for, each with the command
+// that makes it again; err is what its making said.
 func (f *figureFlags) write(s *subject, scene *render.Scene, err error) error {
 	if err != nil {
 		return figureError(err)
 	}
+	o := render.Options{Producer: program + " " + s.version, DPI: f.DPI, OutlineText: f.SVGText == svgTexts[1]}
 	var failed []error
 	for _, path := range f.Figures {
-		if err := scene.WriteFile(path, render.Options{Producer: program + " " + s.version}); err != nil {
+		scene.Origin = figureOrigin(f.cmd, s, figureFormat(path))
+		if err := scene.WriteFile(path, o); err != nil {
 			failed = append(failed, figureError(err))
 		}
 	}

@@ -5,7 +5,6 @@ import (
 	"math"
 	"path/filepath"
 	"slices"
-	"strings"
 
 	"github.com/spf13/cobra"
 
@@ -77,39 +76,6 @@ func (f *systemFlags) check() (err error) {
 		return &usageError{Where: "--pressure", What: fmt.Sprintf("%g is not a pressure", *f.Pressure), Remedy: "give GPa, 0 or more"}
 	}
 	return nil
-}
-
-// figureFlags say which figures are drawn, and how.
-type figureFlags struct {
-	Figures []string
-	WidthMM float64
-	Style   string
-}
-
-func (f *figureFlags) add(cmd *cobra.Command) {
-	fs := cmd.Flags()
-	fs.StringArrayVar(&f.Figures, "figure", nil, "draw the figure into this `file`; its ending chooses pdf, svg or png (repeatable)")
-	fs.Float64Var(&f.WidthMM, "width", defaultWidth, "width of the figure in `mm`: 84 for one column, 174 for two")
-	fs.StringVar(&f.Style, "style", "colour", "`look` of the figure: colour or ink")
-	choices(cmd, "width", "84", "174")
-	choices(cmd, "style", "colour", "ink")
-	_ = cmd.RegisterFlagCompletionFunc("figure", endings(figureFormats()...))
-}
-
-func (f *figureFlags) check() error {
-	for _, path := range f.Figures {
-		if ending := strings.ToLower(strings.TrimPrefix(filepath.Ext(path), ".")); !slices.Contains(figureFormats(), ending) {
-			return &usageError{Where: "--figure " + path, What: "its ending names no format of a figure", Remedy: "let it end in .pdf, .svg or .png"}
-		}
-		if err := checkTarget("--figure", path); err != nil {
-			return err
-		}
-	}
-	if !(f.WidthMM >= narrowest && f.WidthMM <= widest) {
-		return &usageError{Where: "--width", What: fmt.Sprintf("a figure cannot be %g mm wide", f.WidthMM),
-			Remedy: fmt.Sprintf("give 84 for one column, 174 for two, or another width from %d to %d mm", narrowest, widest)}
-	}
-	return checkStyle(f.Style)
 }
 
 // checkTargets refuses a command that would write one file twice, or write over

@@ -40,7 +40,7 @@ Compositions are percentages in the basis in force. Isotherms at an interval kee
 to the range of temperature for which the system file vouches. The result of
 --format csv holds one record for each point; that of --format json is one object.`,
 		Example: `  thalweg liquidus di-an-fo
-  thalweg liquidus di-ab-an --isotherms 25 --figure basalt.pdf --width 84 --style ink
+  thalweg liquidus di-ab-an --isotherms 25 --figure basalt.pdf --style single-84 --ink
   thalweg liquidus lif-naf-kf --basis mol --isotherms 500,600,700 --format json --output salt.json
   thalweg liquidus di-an-fo --without An --figure metastable.svg
   thalweg liquidus di-ab-an --samples samples.csv --figure samples.pdf --figure samples.png`,
@@ -77,18 +77,6 @@ func (o *LiquidusOptions) check() (err error) {
 		}
 	}
 	return checkTargets(o.Output, o.Figures, o.System, o.Samples)
-}
-
-// idleFigureFlags says which flags do nothing for want of a figure.
-func (e *env) idleFigureFlags(cmd *cobra.Command, f *figureFlags, quiet bool) {
-	if len(f.Figures) > 0 {
-		return
-	}
-	for _, name := range []string{"width", "style"} {
-		if cmd.Flags().Changed(name) {
-			e.notice(quiet, "--%s has no effect without --figure", name)
-		}
-	}
 }
 
 // liquidusResult is what the writers of the verb get.

@@ -20,13 +20,16 @@ func parse(t *testing.T, cmd *cobra.Command, args []string) {
 	}
 }
 
+// noFigure are the flags of figures as they stand.
+var noFigure = figureFlags{WidthMM: 174, Style: "double-174", Shade: "solids", DPI: 300, SVGText: "text"}
+
 func TestLiquidusOptions(t *testing.T) {
 	t.Chdir(t.TempDir())
 	pressure := 0.2
 	base := LiquidusOptions{
 		resultFlags: resultFlags{Format: "text", Output: "-"},
 		systemFlags: systemFlags{Basis: "wt", basis: ternary.Mass},
-		figureFlags: figureFlags{WidthMM: 174, Style: "colour"},
+		figureFlags: noFigure,
 		Isotherms:   "auto",
 	}
 	tests := []struct {
@@ -42,8 +45,11 @@ func TestLiquidusOptions(t *testing.T) {
 		{"basis", []string{"--basis=mol"}, func(o *LiquidusOptions) { o.Basis, o.basis = "mol", ternary.Mole }},
 		{"without, twice and as a list", []string{"--without", "Fo", "--without", "An,Di"}, func(o *LiquidusOptions) { o.Without = []string{"Fo", "An", "Di"} }},
 		{"pressure", []string{"--pressure", "0.2"}, func(o *LiquidusOptions) { o.Pressure, o.pressure = &pressure, 0.2 }},
-		{"figures", []string{"--figure", "a.pdf", "--figure", "b,c.PNG", "--width", "84", "--style", "ink"}, func(o *LiquidusOptions) {
-			o.figureFlags = figureFlags{Figures: []string{"a.pdf", "b,c.PNG"}, WidthMM: 84, Style: "ink"}
+		{"figures", []string{"--figure", "a.pdf", "--figure", "b,c.PNG", "--width", "90", "--style", "small-89", "--ink", "--dpi", "600", "--svg-text", "outlines"}, func(o *LiquidusOptions) {
+			o.figureFlags = figureFlags{Figures: []string{"a.pdf", "b,c.PNG"}, WidthMM: 90, Style: "small-89", Ink: true, Shade: "solids", DPI: 600, SVGText: "outlines"}
+		}},
+		{"width of the style", []string{"--style", "single-84", "--shade", "temperature"}, func(o *LiquidusOptions) {
+			o.Style, o.WidthMM, o.Shade = "single-84", 84, "temperature"
 		}},
 		{"interval", []string{"--isotherms", "25"}, func(o *LiquidusOptions) { o.Isotherms, o.isotherms = "25", isotherms{interval: 25} }},
 		{"samples", []string{"--samples", "s.csv"}, func(o *LiquidusOptions) { o.Samples = "s.csv" }},
@@ -53,6 +59,7 @@ func TestLiquidusOptions(t *testing.T) {
 			var got *LiquidusOptions
 			e := newEnv(&bytes.Buffer{}, &bytes.Buffer{})
 			parse(t, NewCmdLiquidus(e, func(o *LiquidusOptions) error { got = o; return nil }), tt.args)
+			got.cmd = nil // the command itself is not compared
 			want := base
 			tt.want(&want)
 			if !reflect.DeepEqual(*got, want) {
@@ -169,8 +176,9 @@ func TestCompletion(t *testing.T) {
 		{"formats", []string{"show", "--format", ""}, []string{"text", "json", "csv"}, nil},
 		{"modes", []string{"descend", "--mode", ""}, []string{"equilibrium", "fractional"}, nil},
 		{"basis", []string{"descend", "--basis", ""}, []string{"wt", "mol"}, nil},
-		{"styles", []string{"liquidus", "--style", ""}, []string{"colour", "ink"}, nil},
+		{"styles", []string{"liquidus", "--style", ""}, []string{"single-84", "middle-140", "heavy-185", "slides"}, nil},
 		{"widths", []string{"liquidus", "--width", ""}, []string{"84", "174"}, nil},
+		{"shades", []string{"descend", "--shade", ""}, []string{"solids", "temperature"}, nil},
 		{"figures", []string{"liquidus", "--figure", ""}, []string{"pdf", "svg", "png"}, nil},
 		{"bulk", []string{"descend", "di-an-fo", "--bulk", "An=3,"}, []string{"An=3,Di=", "An=3,Fo="}, []string{"An=3,An="}},
 		{"unknown system", []string{"liquidus", "nowhere", "--without", ""}, nil, []string{"Di"}},

@@ -128,7 +128,7 @@ func TestSamplesByteOrderMark(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	list, err := readSamples(path, f.Components, 0)
+	list, _, err := readSamples(path, f.Components, 0)
 	if err != nil || len(list) != 1 || list[0].Name != "A" || list[0].X != [3]float64{1, 0, 0} {
 		t.Errorf("%v, %v", list, err)
 	}

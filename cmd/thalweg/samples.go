@@ -30,10 +30,10 @@ const nameColumn = "name"
 
 // readSamples reads a CSV file with a header: name and the three component
 // symbols, in any order. Amounts are in basis b. Lines that begin with # are
-// skipped. Every error names file, line and column.
-func readSamples(path string, cs ternary.Components, b ternary.Basis) ([]sample, error) {
-	whole := func(what, remedy string, err error) ([]sample, error) {
-		return nil, &usageError{Where: path, What: what, Remedy: remedy, Err: err}
+// skipped. Every error names file, line and column. data are the bytes read.
+func readSamples(path string, cs ternary.Components, b ternary.Basis) (list []sample, data []byte, err error) {
+	whole := func(what, remedy string, err error) ([]sample, []byte, error) {
+		return nil, nil, &usageError{Where: path, What: what, Remedy: remedy, Err: err}
 	}
 	if !strings.EqualFold(filepath.Ext(path), ".csv") {
 		return whole("its name does not end in .csv", "give a table of comma-separated values", nil)
@@ -47,15 +47,16 @@ func readSamples(path string, cs ternary.Components, b ternary.Basis) ([]sample,
 	case tooLarge:
 		return whole(fmt.Sprintf("it is larger than %d MiB", maxSamples>>20), "is it the right file?", nil)
 	}
-	data = bytes.TrimPrefix(data, []byte("\uFEFF"))
+	table := bytes.TrimPrefix(data, []byte("\uFEFF"))
 	switch {
-	case len(bytes.TrimSpace(data)) == 0:
+	case len(bytes.TrimSpace(table)) == 0:
 		return whole("it is empty", "give a header line "+sampleHeader(cs)+" and one line for each sample", nil)
-	case !utf8.Valid(data):
+	case !utf8.Valid(table):
 		return whole("it is not UTF-8 text", "save it as CSV in UTF-8", nil)
 	}
-	r := &sampleReader{path: path, cs: cs, basis: b, csv: csv.NewReader(bytes.NewReader(data)), names: map[string]int{}}
-	return r.read()
+	r := &sampleReader{path: path, cs: cs, basis: b, csv: csv.NewReader(bytes.NewReader(table)), names: map[string]int{}}
+	list, err = r.read()
+	return list, data, err
 }
 
 func sampleHeader(cs ternary.Components) string {
@@ -183,10 +184,11 @@ func (r *sampleReader) row(rec []string) (s sample, err error) {
 
 // loadSamples reads the table and says what was normalised.
 func (e *env) loadSamples(path string, s *subject, quiet bool) ([]sample, error) {
-	list, err := readSamples(path, s.sys.Components, s.basis)
+	list, data, err := readSamples(path, s.sys.Components, s.basis)
 	if err != nil {
 		return nil, err
 	}
+	s.input("samples", path, data)
 	var off []string
 	for _, p := range list {
 		if !normalised(p.Sum) {

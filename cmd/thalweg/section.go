@@ -167,9 +167,9 @@ func (r *sectionsResult) draw(f *figureFlags) error {
 	if len(f.Figures) == 0 {
 		return nil
 	}
-	style, err := render.StyleNamed(f.Style)
+	style, err := f.look()
 	if err != nil {
-		return badInput(err)
+		return err
 	}
 	fig := render.Isothermal{Sections: r.sections, Basis: r.basis, Style: style, WidthMM: f.WidthMM, Provenance: r.provenance("section", "basis "+r.basis.String())}
 	for _, q := range r.samples {

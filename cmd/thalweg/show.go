@@ -12,22 +12,28 @@ import (
 // ShowOptions are the options of the verb show.
 type ShowOptions struct {
 	resultFlags
-	System string
+	System string // or the path of a figure
 }
 
 // NewCmdShow builds the verb show; runF replaces its run function in tests.
 func NewCmdShow(e *env, runF func(*ShowOptions) error) *cobra.Command {
 	o := &ShowOptions{}
 	cmd := &cobra.Command{
-		Use:   "show [SYSTEM]",
-		Short: "Show one system: its phases, its numbers and their sources",
+		Use:   "show [SYSTEM|FIGURE]",
+		Short: "Show one system, its numbers and their sources, or how a figure was made",
 		Long: `Show one system: what it stands for and what it leaves out, its phases, and every
 number it holds with the source of each.
 
-SYSTEM is a built-in name or the path of a .toml file; without it, ` + defaultSystem + `.`,
+SYSTEM is a built-in name or the path of a .toml file; without it, ` + defaultSystem + `.
+
+For a FIGURE that this program made, a file that ends in .pdf, .svg or .png: the
+command that makes it again, and whether the program, the system and the table of
+samples are still those it was made with. Files are looked for under the names on
+the command line, from the folder in which show is run.`,
 		Example: `  thalweg show di-ab-an
   thalweg show lif-naf-kf --format csv --output numbers.csv
-  thalweg show my-system.toml`,
+  thalweg show my-system.toml
+  thalweg show path.pdf`,
 		Args:              atMostOneSystem,
 		ValidArgsFunction: completeSystem,
 		RunE: func(_ *cobra.Command, args []string) error {
@@ -51,6 +57,9 @@ SYSTEM is a built-in name or the path of a .toml file; without it, ` + defaultSy
 }
 
 func showRun(e *env, o *ShowOptions) error {
+	if isFigure(o.System) {
+		return showFigure(e, o)
+	}
 	f, err := e.openFile(o.System, o.Quiet)
 	if err != nil {
 		return err

@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"strings"
 
+	"thalweg/render"
 	"thalweg/systems"
 	"thalweg/ternary"
 	"thalweg/ternary/gibbs"
@@ -18,6 +19,8 @@ const pascal = 1e9
 
 // subject is the system that a command works on, with the file it came from.
 type subject struct {
+	given   string         // as it was named on the command line
+	read    []render.Input // what was read beside the system
 	file    *systems.File
 	sys     *gibbs.System
 	basis   ternary.Basis
@@ -53,7 +56,10 @@ func (e *env) open(o *systemFlags, quiet bool) (*subject, error) {
 	if err != nil {
 		return nil, badSystem(err)
 	}
-	s := &subject{file: f, sys: sys, basis: o.basis, version: e.version}
+	s := &subject{given: o.System, file: f, sys: sys, basis: o.basis, version: e.version}
+	if s.given == "" {
+		s.given = defaultSystem
+	}
 	if len(sys.Withheld) > 0 {
 		e.notice(quiet, "%s", s.metastable())
 	}
