@@ -33,7 +33,7 @@ var presets = []Preset{
 	{"heavy-185", "two columns of 185 mm together, 8 pt text, no line under 1 pt", 185, (*Style).heavy},
 	{"small-89", "one column of 89 mm, 7 pt text, nothing under 5 pt", 89, (*Style).small},
 	{"small-183", "two columns of 183 mm together, 7 pt text, nothing under 5 pt", 183, (*Style).small},
-	{"slides", "300 mm wide for projection, 18 pt text, lines from 1 pt", 300, (*Style).slides},
+	{"slides", "310 mm wide for projection, 16 pt text, lines from 1 pt", 310, (*Style).slides},
 }
 
 // Presets lists the presets.
@@ -76,10 +76,10 @@ func (s *Style) small() { s.Base, s.Apex, s.MinText = 7, 8, 5 }
 // room it needs large type with few words, and so the proportions of a narrow
 // figure.
 func (s *Style) slides() {
-	s.Zoom = 2.25
-	s.MinLine = 0.45
+	s.Zoom = 2
+	s.MinLine = 0.5
 	s.Frame, s.Tick, s.Boundary, s.Polymorph = 1, 0.6, 1.4, 0.9
-	s.Isotherm, s.IsothermHeavy = 0.45, 0.8
+	s.Isotherm, s.IsothermHeavy = 0.5, 0.85
 	s.Path, s.SolidPath, s.Mark, s.Rule, s.Lead = 1.7, 1.1, 0.9, 0.5, 0.5
 }
 

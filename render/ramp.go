@@ -43,8 +43,8 @@ func encodeSRGB(v float64) uint8 {
 // order survives in grey and for every kind of colour vision; and the dark end is
 // light enough for black words at 4.5:1 and for all lines at 3:1.
 var (
-	rampHot  = lab{96.5, 1, 17}
-	rampCold = lab{79, -8, -14}
+	rampHot  = lab{97, 0, 13}
+	rampCold = lab{78, -7, -12}
 )
 
 // temperatureRamp is the scale of temperatures in n even steps, hottest first.
