@@ -46,7 +46,7 @@ var probes = [12]float64{0.006, -0.006, 0.02, -0.02, 0.05, -0.05, 0.1, -0.1, 0.1
 
 // probe climbs from points along the softest direction through y.
 func (p *Phase) probe(out []Drive, d *[3]float64, y [3]float64, T float64) []Drive {
-	v, ok := p.softest(y, T)
+	v, ok := p.Softest(y, T)
 	if !ok {
 		return out
 	}
@@ -76,9 +76,9 @@ func (p *Phase) addMaximum(out []Drive, d *[3]float64, y [3]float64, T float64) 
 	return append(out, q)
 }
 
-// softest is the direction in y, Σ = 0 and of unit largest entry, along which
+// Softest is the direction in y, Σ = 0 and of unit largest entry, along which
 // the Gibbs energy at y curves least in proportion to ideal mixing.
-func (p *Phase) softest(y [3]float64, T float64) (v [3]float64, ok bool) {
+func (p *Phase) Softest(y [3]float64, T float64) (v [3]float64, ok bool) {
 	n := len(p.Members) - 1
 	for k := 0; k <= n; k++ {
 		if y[k] <= 1e-9 {

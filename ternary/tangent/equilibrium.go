@@ -41,6 +41,9 @@ const (
 	cutTol = 1e-10
 	// cutNear is the driving force, in RT, from which Newton's method is tried.
 	cutNear = 0.05
+	// criticalDepth is the violation, in RT, below which an attempt that fails may
+	// fail for the closeness of a critical point.
+	criticalDepth = 1e-4
 	// cutRounds bounds the cutting planes.
 	cutRounds = 400
 	// amountTol is an amount, in moles per mole of bulk, that counts as none.
@@ -89,6 +92,16 @@ func Solve(sys *gibbs.System, b ternary.Composition, T float64) (*Equilibrium, e
 		}
 		if err == nil {
 			s.addAt(q.Mu)
+		}
+		if err != nil && worst < criticalDepth {
+			if parts, ok := s.criticalStart(); ok {
+				if c, err := coexist(sys, b, T, s.mu, parts); err == nil {
+					if c.Margin = margin(sys, &c.Mu, T, c.Parts); c.Margin <= cutTol {
+						c.Rounds = s.rounds
+						return c, nil
+					}
+				}
+			}
 		}
 		if worst < 1e-13 {
 			if err == nil {

@@ -31,6 +31,9 @@ func Refine(sys *gibbs.System, b ternary.Composition, T float64, mu [3]float64, 
 	parts = append([]Part(nil), parts...)
 	for len(parts) > 0 {
 		q, err := newton(sys, b, T, mu, parts)
+		if err != nil && twice(parts) {
+			q, err = coexist(sys, b, T, mu, parts)
+		}
 		if err != nil {
 			return nil, err
 		}
