@@ -6,6 +6,8 @@ import (
 	"testing"
 
 	"thalweg/systems"
+	"thalweg/ternary"
+	"thalweg/ternary/section"
 )
 
 // looks are all styles that a preset has.
@@ -62,23 +64,50 @@ func leastOf(preset string) (line, text float64) {
 	return 0.3, 6
 }
 
-func TestPresetsKeepTheirRules(t *testing.T) {
-	eachPreset(t, func(t *testing.T, st Style, s *Scene) {
-		if math.Abs(s.Width-st.Width) > 1e-9 {
-			t.Errorf("the page is %g mm wide, want %g", s.Width, st.Width)
+// keepsRules examines a finished page of a preset.
+func keepsRules(t *testing.T, st Style, s *Scene) {
+	t.Helper()
+	if math.Abs(s.Width-st.Width) > 1e-9 {
+		t.Errorf("the page is %g mm wide, want %g", s.Width, st.Width)
+	}
+	if highest := max(240, st.Width*st.zoom()/2); s.Height > highest { // no publisher of the presets takes more than 240
+		t.Errorf("the page is %g mm high", s.Height)
+	}
+	line, text := leastOf(st.Name)
+	report(t, tooSmall(s, line, text))
+	report(t, touching(s))
+	report(t, beyondPage(s))
+	report(t, faintItems(s, st))
+	if n := len(texts(s)); n < 20 {
+		t.Errorf("only %d texts", n)
+	}
+}
+
+func TestPresetsKeepTheirRules(t *testing.T) { eachPreset(t, keepsRules) }
+
+func TestSectionsKeepTheRulesOfPresets(t *testing.T) {
+	for name, at := range map[string][]float64{"di-ab-an": {1250, 1150}, "di-an-fo": {1300}, "lif-naf-kf": {550}} {
+		f := Isothermal{Samples: figures(t)[name].Samples}
+		for _, celsius := range at {
+			s, err := section.Compute(figures(t)[name].Projection.System, celsius+ternary.ZeroCelsius, section.Options{})
+			if err != nil {
+				t.Fatal(err)
+			}
+			f.Sections = append(f.Sections, s)
 		}
-		if highest := max(240, st.Width*st.zoom()/2); s.Height > highest { // no publisher of the presets takes more than 240
-			t.Errorf("the page is %g mm high", s.Height)
+		for _, p := range Presets() {
+			for look, st := range looks(p, t) {
+				f.Style = st
+				t.Run(fmt.Sprintf("%s/%s/%s", p.Name, look, name), func(t *testing.T) {
+					s, err := f.Scene()
+					if err != nil {
+						t.Fatal(err)
+					}
+					keepsRules(t, st, s)
+				})
+			}
 		}
-		line, text := leastOf(st.Name)
-		report(t, tooSmall(s, line, text))
-		report(t, touching(s))
-		report(t, beyondPage(s))
-		report(t, faintItems(s, st))
-		if n := len(texts(s)); n < 20 {
-			t.Errorf("only %d texts", n)
-		}
-	})
+	}
 }
 
 // The promise in the name of a preset is kept by its numbers.

@@ -44,12 +44,12 @@ func (s *Scene) raster(dpi int) (*image.RGBA, int, error) {
 		dpi = defaultDPI
 	}
 	if dpi < 1 || dpi > MostDPI {
-		return nil, 0, fmt.Errorf("png resolution of %d dpi: use 1 to %d", dpi, MostDPI)
+		return nil, 0, &FigureError{What: fmt.Sprintf("a png cannot have %d dpi", dpi), Where: "figure resolution", Remedy: fmt.Sprintf("use 1 to %d", MostDPI)}
 	}
 	px := func(mm float64) int { return max(1, int(math.Round(mm/25.4*float64(dpi)))) }
 	w, h := px(s.Width), px(s.Height)
 	if float64(w)*float64(h) > maxPixels {
-		return nil, 0, fmt.Errorf("png of %d x %d pixels is too large: lower the dpi or the figure width", w, h)
+		return nil, 0, &FigureError{What: fmt.Sprintf("a png of %d × %d pixels is too large", w, h), Where: "figure resolution", Remedy: "lower the dpi or the width"}
 	}
 	img := image.NewRGBA(image.Rect(0, 0, w, h))
 	draw.Draw(img, img.Bounds(), image.White, image.Point{}, draw.Src)

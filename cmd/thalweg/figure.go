@@ -55,10 +55,11 @@ func (f *figureFlags) write(s *subject, scene *render.Scene, err error) error {
 }
 
 // figureError marks what the user's words made undrawable: a sample's name with
-// a character that the font lacks.
+// a character that the font lacks, a size that no picture can have.
 func figureError(err error) error {
 	var glyph *render.GlyphError
-	if errors.As(err, &glyph) {
+	var figure *render.FigureError
+	if errors.As(err, &glyph) || errors.As(err, &figure) {
 		return badInput(err)
 	}
 	return fmt.Errorf("the figure could not be made: %w", err)
