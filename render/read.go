@@ -105,6 +105,7 @@ const (
 	recordSpace   = "urn:x-thalweg:figure"
 	recordElement = "origin"
 	recordKey     = "thalweg-origin"
+	sealKey       = "thalweg-seal"
 )
 
 // readSVG reads the whole file as XML, and compares the seal at its end.
@@ -155,7 +156,7 @@ func findRecord(b []byte) (string, error) {
 // svgSeal is the last line of an SVG: a hash of everything before it, by which a
 // later change shows.
 func svgSeal(before []byte) []byte {
-	return fmt.Appendf(nil, "<!-- SHA-256 of all above: %x -->\n", sha256.Sum256(before))
+	return fmt.Appendf(nil, "<!-- SHA-256 of all above: %s -->\n", hashHex(before))
 }
 
 func svgSealed(b []byte) bool {
@@ -165,9 +166,10 @@ func svgSealed(b []byte) bool {
 
 const pngSignature = "\x89PNG\r\n\x1a\n"
 
-// readPNG walks the chunks, each of which has its own check sum.
+// readPNG walks the chunks, each of which has its own check sum, and compares the
+// seal that stands last.
 func readPNG(b []byte) (record string, changed bool, err error) {
-	found := 0
+	found, sealed := 0, false
 	for at := len(pngSignature); ; {
 		if len(b)-at < 12 {
 			return "", false, errors.New("its end is missing")
@@ -176,16 +178,17 @@ func readPNG(b []byte) (record string, changed bool, err error) {
 		if n > int64(len(b)-at-12) {
 			return "", false, errors.New("a chunk reaches past the end of the file")
 		}
-		body := b[at+4 : at+8+int(n)]
+		start, body := at, b[at+4:at+8+int(n)]
 		at += 12 + int(n)
 		if be.Uint32(b[at-4:]) != crc32.ChecksumIEEE(body) {
 			return "", false, fmt.Errorf("the check sum of chunk %q is wrong", body[:4])
 		}
 		switch kind, data := string(body[:4]), body[4:]; kind {
 		case "iTXt":
-			if text, ok := strings.CutPrefix(string(data[:min(len(data), recordLargest+64)]), recordKey+"\x00\x00\x00\x00\x00"); ok {
+			if text, ok := strings.CutPrefix(string(data[:min(len(data), recordLargest+64)]), recordKey+itxtPlain); ok {
 				record, found = text, found+1
 			}
+			sealed = at == len(b)-12 && string(data) == sealKey+itxtPlain+hashHex(b[:start])
 		case "IEND":
 			switch {
 			case at != len(b):
@@ -195,7 +198,10 @@ func readPNG(b []byte) (record string, changed bool, err error) {
 			case found > 1:
 				return "", false, errors.New("it holds more than one record")
 			}
-			return record, false, nil
+			return record, !sealed, nil
 		}
 	}
 }
+
+// hashHex is the SHA-256 of b in hexadecimal.
+func hashHex(b []byte) string { return fmt.Sprintf("%x", sha256.Sum256(b)) }

@@ -166,6 +166,23 @@ func TestPNGChunksThatLie(t *testing.T) {
 	}
 }
 
+// A picture that another program wrote anew, keeping the texts, is known for what
+// it is.
+func TestPNGWrittenAnew(t *testing.T) {
+	whole := mustWrite(t, withOrigin(sampleOrigin()), "png", Options{DPI: 50})
+	end := whole[len(whole)-12:]
+	var more bytes.Buffer
+	more.Write(whole[:len(whole)-12])
+	appendChunk(&more, "tEXt", []byte("Comment\x00seen by someone"))
+	more.Write(end)
+	seal := bytes.Index(whole, []byte(sealKey)) - 8
+	for name, b := range map[string][]byte{"with another text": more.Bytes(), "without its seal": append(bytes.Clone(whole[:seal]), end...)} {
+		if r, err := ReadOrigin(b); err != nil || !r.Changed {
+			t.Errorf("%s: %+v, %v", name, r, err)
+		}
+	}
+}
+
 func FuzzReadOrigin(f *testing.F) {
 	for _, format := range Formats() {
 		var b bytes.Buffer

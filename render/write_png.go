@@ -120,8 +120,13 @@ func canvasPath(p Path) *canvas.Path {
 	return out
 }
 
+// itxtPlain follows the keyword of a text that is not compressed and has neither
+// language nor translated keyword.
+const itxtPlain = "\x00\x00\x00\x00\x00"
+
 // insertChunks copies an encoded picture, adding after its header the colour
-// space, the physical size and the metadata.
+// space, the physical size and the metadata, and before its end a hash of all that
+// stands there, by which a later change shows.
 func insertChunks(w io.Writer, pic []byte, dpi int, m metadata) error {
 	const header = 8 + 25 // signature and IHDR
 	var b bytes.Buffer
@@ -133,11 +138,15 @@ func insertChunks(w io.Writer, pic []byte, dpi int, m metadata) error {
 		{"Title", m.title}, {"Description", m.description}, {"Software", m.producer}, {"Source", m.provenance}, {recordKey, m.origin},
 	} {
 		if e.value != "" {
-			// keyword, not compressed, no language, no translated keyword
-			appendChunk(&b, "iTXt", []byte(e.key+"\x00\x00\x00\x00\x00"+e.value))
+			appendChunk(&b, "iTXt", []byte(e.key+itxtPlain+e.value))
 		}
 	}
-	b.Write(pic[header:])
+	end := len(pic) - 12 // of IEND, which is empty
+	b.Write(pic[header:end])
+	if m.origin != "" {
+		appendChunk(&b, "iTXt", []byte(sealKey+itxtPlain+hashHex(b.Bytes())))
+	}
+	b.Write(pic[end:])
 	_, err := w.Write(b.Bytes())
 	return err
 }
