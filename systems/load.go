@@ -86,6 +86,15 @@ func Load(path string) (*File, error) {
 
 // loadFrom reads the file base of a file system; name is what the user called it.
 func loadFrom(fsys fs.FS, base, name string) (*File, error) {
+	data, err := readFile(fsys, base, name, "a system file")
+	if err != nil {
+		return nil, err
+	}
+	return Parse(name, data)
+}
+
+// readFile reads an ordinary file of a bounded size; what names the kind of file.
+func readFile(fsys fs.FS, base, name, what string) ([]byte, error) {
 	info, err := fs.Stat(fsys, base)
 	switch {
 	case errors.Is(err, fs.ErrNotExist):
@@ -95,17 +104,17 @@ func loadFrom(fsys fs.FS, base, name string) (*File, error) {
 	case err != nil:
 		return nil, wholeFile(name, "it cannot be read: "+plainCause(err), "check the path")
 	case info.IsDir():
-		return nil, wholeFile(name, "it is a directory", "give a system file, which ends in "+ending)
+		return nil, wholeFile(name, "it is a directory", "give "+what+", which ends in "+ending)
 	case !info.Mode().IsRegular():
-		return nil, wholeFile(name, "it is not an ordinary file", "give a system file, which ends in "+ending)
+		return nil, wholeFile(name, "it is not an ordinary file", "give "+what+", which ends in "+ending)
 	case filepath.Ext(base) != ending:
-		return nil, wholeFile(name, "its name does not end in "+ending, "give a system file, or rename it")
+		return nil, wholeFile(name, "its name does not end in "+ending, "give "+what+", or rename it")
 	}
 	data, err := readLimited(fsys, base)
 	if err != nil {
 		return nil, wholeFile(name, "it cannot be read: "+plainCause(err), "check its permissions")
 	}
-	return Parse(name, data)
+	return data, nil
 }
 
 // plainCause is the reason behind a file error, without the path.
@@ -130,20 +139,10 @@ func readLimited(fsys fs.FS, base string) ([]byte, error) {
 // Parse reads a system file from memory; name stands in the messages. What is
 // wrong with it, all of it, is a [*FileError].
 func Parse(name string, data []byte) (*File, error) {
-	text := bytes.TrimPrefix(data, []byte("\uFEFF"))
-	switch {
-	case len(data) > maxSize:
-		return nil, wholeFile(name, "it is larger than 1 MiB", "a system file has some kilobytes: is it the right file?")
-	case len(bytes.TrimSpace(text)) == 0:
-		return nil, wholeFile(name, "it is empty", "see a built-in system for the form of the file")
-	case !utf8.Valid(text):
-		return nil, wholeFile(name, "it is not UTF-8 text", "save it as UTF-8")
-	}
-	r := &report{file: name, index: newIndex(text)}
-	decodable := checkSchema(r)
 	var w wireFile
-	if !r.decode(text, &w, decodable) {
-		return nil, r.err()
+	r, err := decode(name, data, &w, systemSchema, "a system file")
+	if err != nil {
+		return nil, err
 	}
 	f := &File{Name: name, raw: bytes.Clone(data)}
 	(&checker{report: r, w: &w, f: f}).check()
@@ -153,9 +152,29 @@ func Parse(name string, data []byte) (*File, error) {
 	return f, nil
 }
 
+// decode reads a TOML document into w, a pointer to a wire type with this schema.
+// What is wrong with its form, all of it, is a [*FileError].
+func decode(name string, data []byte, w any, s schema, what string) (*report, error) {
+	text := bytes.TrimPrefix(data, []byte("\uFEFF"))
+	switch {
+	case len(data) > maxSize:
+		return nil, wholeFile(name, "it is larger than 1 MiB", what+" has some kilobytes: is it the right file?")
+	case len(bytes.TrimSpace(text)) == 0:
+		return nil, wholeFile(name, "it is empty", "see an example for the form of "+what)
+	case !utf8.Valid(text):
+		return nil, wholeFile(name, "it is not UTF-8 text", "save it as UTF-8")
+	}
+	r := &report{file: name, index: newIndex(text)}
+	decodable := checkSchema(r, s)
+	if !r.decode(text, w, decodable) {
+		return nil, r.err()
+	}
+	return r, nil
+}
+
 // decode fills w and reports whether it could. Values of the wrong form and
 // unknown keys are known already from the schema; what is left is syntax.
-func (r *report) decode(data []byte, w *wireFile, decodable bool) bool {
+func (r *report) decode(data []byte, w any, decodable bool) bool {
 	var syntax *toml.DecodeError
 	if !decodable {
 		// Only the syntax can still be judged.

@@ -28,17 +28,20 @@ var formNames = map[form]string{
 	texts: "a list of texts", numbers: "a list of numbers", aTable: "a table", tables: "a list of tables",
 }
 
-// schema maps the plain key of everything a system file may hold to its form.
-// It is read off the wire types.
-var schema = buildSchema()
+// schema maps the plain key of everything a file may hold to its form. It is read
+// off the wire types.
+type schema map[string]form
 
-func buildSchema() map[string]form {
-	out := map[string]form{}
-	describe(reflect.TypeFor[wireFile](), "", out)
+// systemSchema is that of a system file.
+var systemSchema = newSchema(reflect.TypeFor[wireFile]())
+
+func newSchema(t reflect.Type) schema {
+	out := schema{}
+	describe(t, "", out)
 	return out
 }
 
-func describe(t reflect.Type, prefix string, out map[string]form) {
+func describe(t reflect.Type, prefix string, out schema) {
 	for i := 0; i < t.NumField(); i++ {
 		f := t.Field(i)
 		if f.Anonymous {
@@ -74,7 +77,7 @@ var scalarForms = map[reflect.Type]form{
 
 // checkSchema reports every unknown key and every value of the wrong form, and
 // whether the forms are good enough to decode.
-func checkSchema(r *report) (decodable bool) {
+func checkSchema(r *report, schema schema) (decodable bool) {
 	decodable = true
 	for _, e := range r.index.entries {
 		key := plainKey(e.path)
@@ -86,7 +89,7 @@ func checkSchema(r *report) (decodable bool) {
 			}
 			above := plainKey(parent(key))
 			if _, ok := schema[above]; ok || above == "" {
-				r.add(e.path, "this key is unknown", remedyUnknown(key))
+				r.add(e.path, "this key is unknown", schema.remedyUnknown(key))
 			}
 			continue
 		}
@@ -147,7 +150,7 @@ func kindName(k unstable.Kind) string {
 
 // remedyUnknown says which keys the table has, the nearest first if one is near
 // enough to be a slip or a wrong unit.
-func remedyUnknown(key string) string {
+func (schema schema) remedyUnknown(key string) string {
 	above := parent(key)
 	var known []string
 	for k := range schema {
