@@ -3,7 +3,7 @@ package main
 import (
 	"crypto/sha256"
 	"encoding/csv"
-	"encoding/hex"
+	"fmt"
 	"path/filepath"
 	"slices"
 	"strings"
@@ -95,6 +95,8 @@ func portable(path string) string {
 
 // input records that a file was read.
 func (s *subject) input(kind, path string, data []byte) {
-	sum := sha256.Sum256(data)
-	s.read = append(s.read, render.Input{Kind: kind, Name: portable(path), SHA256: hex.EncodeToString(sum[:])})
+	s.read = append(s.read, render.Input{Kind: kind, Name: portable(path), SHA256: hash(data)})
 }
+
+// hash is the SHA-256 of data in hexadecimal.
+func hash(data []byte) string { return fmt.Sprintf("%x", sha256.Sum256(data)) }

@@ -1,8 +1,6 @@
 package main
 
 import (
-	"crypto/sha256"
-	"encoding/hex"
 	"errors"
 	"fmt"
 	"io/fs"
@@ -109,49 +107,43 @@ func (e *env) unknownCommand(args []string) string {
 
 // holdInput compares an input with what bears its name here.
 func holdInput(in render.Input) heldInput {
-	h := heldInput{Input: in}
-	sum := ""
-	if in.Kind == "system" {
-		f, err := systems.Open(in.Name)
-		var unknown *systems.UnknownSystemError
-		switch {
-		case errors.Is(err, fs.ErrNotExist), errors.As(err, &unknown):
-			h.state = "missing"
-			return h
-		case err != nil:
-			h.state, h.why = "unreadable", err.Error()
-			return h
-		}
-		sum = f.SHA256()
-	} else {
-		st, err := os.Stat(in.Name)
-		switch {
-		case errors.Is(err, fs.ErrNotExist):
-			h.state = "missing"
-			return h
-		case err == nil && !st.Mode().IsRegular():
-			err = errors.New("it is not an ordinary file")
-		}
-		var data []byte
-		tooLarge := false
-		if err == nil {
-			data, tooLarge, err = readLimited(in.Name, maxSamples)
-		}
-		if tooLarge {
-			err = fmt.Errorf("it is larger than %d MiB", maxSamples>>20)
-		}
-		if err != nil {
-			h.state, h.why = "unreadable", plainCause(err).Error()
-			return h
-		}
-		digest := sha256.Sum256(data)
-		sum = hex.EncodeToString(digest[:])
-	}
-	h.state = "changed"
-	if strings.EqualFold(sum, in.SHA256) {
+	h := heldInput{Input: in, state: "changed"}
+	sum, err := hashHere(in)
+	switch {
+	case errors.Is(err, fs.ErrNotExist):
+		h.state = "missing"
+	case err != nil:
+		h.state, h.why = "unreadable", plainCause(err).Error()
+	case strings.EqualFold(sum, in.SHA256):
 		h.state = "same"
 	}
 	return h
+}
+
+// hashHere is the hash of what bears an input's name here.
+func hashHere(in render.Input) (string, error) {
+	if in.Kind == "system" {
+		f, err := systems.Open(in.Name)
+		if _, gone := os.Stat(in.Name); err != nil && gone != nil {
+			return "", gone
+		}
+		if err != nil {
+			return "", err
+		}
+		return f.SHA256(), nil
+	}
+	st, err := os.Stat(in.Name)
+	if err != nil {
+		return "", err
+	}
+	if !st.Mode().IsRegular() {
+		return "", errors.New("it is not an ordinary file")
+	}
+	data, tooLarge, err := readLimited(in.Name, maxSamples)
+	if tooLarge {
+		return "", fmt.Errorf("it is larger than %d MiB", maxSamples>>20)
+	}
+	return hash(data), err
 }
 
 // words is the state of an input in a sentence.

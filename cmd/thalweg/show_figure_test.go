@@ -6,6 +6,7 @@ import (
 	"strings"
 	"testing"
 
+	"thalweg/render"
 	"thalweg/systems"
 )
 
@@ -169,6 +170,35 @@ func TestShowSaysWhatChanged(t *testing.T) {
 		if !strings.Contains(text, want) {
 			t.Errorf("no %q in\n%s", want, text)
 		}
+	}
+}
+
+// A built-in system that another version of the program had, and a file that is
+// gone, are said to be missing.
+func TestShowSaysWhatIsMissing(t *testing.T) {
+	t.Chdir(t.TempDir())
+	for _, name := range []string{"an-old-system", "gone.toml", "../gone/too.toml"} {
+		if h := holdInput(render.Input{Kind: "system", Name: name, SHA256: strings.Repeat("0", 64)}); h.state != "missing" {
+			t.Errorf("%s is %s (%s)", name, h.state, h.why)
+		}
+	}
+}
+
+// A figure from elsewhere cannot propose what this program would not record.
+func TestForeignCommandsAreNamed(t *testing.T) {
+	e := newEnv(&bytes.Buffer{}, &bytes.Buffer{})
+	for _, args := range [][]string{
+		{"liquidus", "di-ab-an", "--output", "precious.txt"},
+		{"liquidus", "di-ab-an", "--figure", "precious.pdf"},
+		{"liquidus", "--colour-of-the-year"},
+		{"systems"}, {"show", "di-ab-an"}, {"rm", "precious.txt"}, {"--help"},
+	} {
+		if e.unknownCommand(args) == "" {
+			t.Errorf("%q passes", args)
+		}
+	}
+	if why := e.unknownCommand([]string{"liquidus", "di-ab-an", "--ink"}); why != "" {
+		t.Errorf("a good command does not pass: %s", why)
 	}
 }
 
