@@ -266,26 +266,36 @@ func (p *panel) name(r *section.Region) {
 	for _, h := range r.Holes {
 		out.rings = append(out.rings, p.ring(h, false))
 	}
+	p.nameRegion(out, assemblage(p.s.System, r.Phases), func(b box) (float64, bool) {
+		if p.tri.rim().excess(b.c) < 2 {
+			return 12, true // it could be taken for the name of the region it stands in
+		}
+		return 0, true
+	})
+}
+
+// nameRegion asks for a name inside a region, level or along it, else beside it with
+// a leader line; beside says what a place there costs, and whether it will do.
+func (b *board) nameRegion(out region, name string, beside func(box) (cost float64, ok bool)) {
 	c, radius := out.pole(0.1)
-	name := p.phases(r.Phases)
-	t := measure(FormulaRuns(name, p.style.Base, Regular))
-	l := label{role: "region", name: name, colour: p.style.Text, wordings: []wording{t}, rank: 2}
+	t := measure(FormulaRuns(name, b.style.Base, Regular))
+	l := label{role: "region", name: name, colour: b.style.Text, wordings: []wording{t}, rank: 2}
 	l.spots = room(out, c, radius, 0, t, 0, 0)
 	if radius < max(6, 0.6*t.w) {
 		l.spots = append(l.spots, room(out, c, radius, 0, t, out.axis(), 13)...)
 		for _, q := range leaders(c, 0, 0, t, 3, 5, 7, 9, 12, 15, 19, 24, 30) {
-			q.cost += 16
-			if p.tri.rim().excess(q.c) < 2 {
-				q.cost += 12
+			if extra, ok := beside(t.around(q.c, 0)); ok {
+				q.cost += 16 + extra
+				l.spots = append(l.spots, q)
 			}
-			l.spots = append(l.spots, q)
 		}
 	}
-	p.words.ask(l)
+	b.words.ask(l)
 }
 
-// phases writes an assemblage: "L + Di"; a phase that is there twice gets a number.
-func (p *panel) phases(list []int) string {
+// assemblage writes phases that coexist: "L + Di"; a phase that is there twice gets
+// a number.
+func assemblage(sys *gibbs.System, list []int) string {
 	count := map[int]int{}
 	for _, i := range list {
 		count[i]++
@@ -297,16 +307,21 @@ func (p *panel) phases(list []int) string {
 			continue
 		}
 		done[i] = true
-		name := "L"
-		if i != gibbs.Liquid {
-			name = p.s.System.Solids[i].Symbol
-		}
+		name := phaseSymbol(sys, i)
 		if count[i] > 1 {
 			name = fmt.Sprintf("%d %s", count[i], name)
 		}
 		out = append(out, name)
 	}
 	return strings.Join(out, " + ")
+}
+
+// phaseSymbol is a solid's symbol, or L.
+func phaseSymbol(sys *gibbs.System, i int) string {
+	if i == gibbs.Liquid {
+		return "L"
+	}
+	return sys.Solids[i].Symbol
 }
 
 // describe fills in the metadata.

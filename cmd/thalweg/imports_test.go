@@ -19,8 +19,9 @@ var mayImport = map[string][]string{
 	"ternary/liquidus": {"ternary", "ternary/gibbs"},
 	"ternary/descent":  {"ternary", "ternary/gibbs", "ternary/tangent", "ternary/liquidus"},
 	"ternary/section":  {"ternary", "ternary/gibbs", "ternary/tangent"},
+	"ternary/join":     {"ternary", "ternary/gibbs", "ternary/tangent", "ternary/liquidus"},
 	"systems":          {"ternary", "ternary/gibbs"},
-	"render":           {"ternary", "ternary/gibbs", "ternary/liquidus", "ternary/descent", "ternary/section"},
+	"render":           {"ternary", "ternary/gibbs", "ternary/liquidus", "ternary/descent", "ternary/section", "ternary/join"},
 }
 
 func TestRoomsKnowOnlyThoseBefore(t *testing.T) {

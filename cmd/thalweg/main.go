@@ -12,6 +12,7 @@ import (
 	"thalweg/ternary"
 	"thalweg/ternary/descent"
 	"thalweg/ternary/gibbs"
+	"thalweg/ternary/join"
 	"thalweg/ternary/liquidus"
 	"thalweg/ternary/section"
 )
@@ -30,10 +31,11 @@ type env struct {
 	follow   func(*gibbs.System, ternary.Composition, descent.Options) (*descent.Path, error)
 	melt     func(*gibbs.System, ternary.Composition, descent.MeltOptions) (*descent.Path, error)
 	cut      func(*gibbs.System, float64) (*section.Section, error)
+	join     func(*gibbs.System, ternary.Composition, ternary.Composition, join.Options) (*join.Diagram, error)
 }
 
 func newEnv(out, err io.Writer) *env {
-	return &env{out: out, err: err, version: buildVersion(), compute: liquidus.Compute, follow: descent.Follow, melt: descent.Melt,
+	return &env{out: out, err: err, version: buildVersion(), compute: liquidus.Compute, follow: descent.Follow, melt: descent.Melt, join: join.Compute,
 		cut: func(sys *gibbs.System, T float64) (*section.Section, error) {
 			return section.Compute(sys, T, section.Options{})
 		}}

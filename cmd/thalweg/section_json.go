@@ -99,15 +99,15 @@ func (s *subject) ringJSON(xs []ternary.Composition) []amounts {
 	return out
 }
 
-func (r *sectionsResult) readingJSON(q *sample, e reading) readingJSON {
-	j := readingJSON{Name: q.Name, Bulk: r.composition(q.X)}
+func (s *subject) readingJSON(q *sample, e reading) readingJSON {
+	j := readingJSON{Name: q.Name, Bulk: s.composition(q.X)}
 	if e.err != nil {
 		return j
 	}
 	j.Phases = []readingPart{}
 	for _, p := range e.Parts {
-		mass, mole := r.share(e.Equilibrium, &p)
-		j.Phases = append(j.Phases, readingPart{r.anyPhase(p.State.Phase), number(part(mass)), number(part(mole)), r.composition(p.State.Composition())})
+		mass, mole := s.share(e.Equilibrium, &p)
+		j.Phases = append(j.Phases, readingPart{s.anyPhase(p.State.Phase), number(part(mass)), number(part(mole)), s.composition(p.State.Composition())})
 	}
 	return j
 }

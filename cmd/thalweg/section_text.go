@@ -22,7 +22,7 @@ func (r *sectionsResult) text() string {
 	r.heading(&b, what, "", complete)
 	for i, s := range r.sections {
 		r.sectionText(&b, s)
-		r.readingsText(&b, r.readings[i])
+		r.readingsText(&b, r.samples, r.readings[i])
 	}
 	r.footing(&b)
 	return b.String()
@@ -102,15 +102,15 @@ func (s *subject) regionArea(g *section.Region) float64 {
 }
 
 // readingsText says which phases the samples consist of.
-func (r *sectionsResult) readingsText(b *strings.Builder, list []reading) {
+func (s *subject) readingsText(b *strings.Builder, samples []sample, list []reading) {
 	if len(list) == 0 {
 		return
 	}
 	b.WriteString("Phases of the samples\n")
 	t := table{columns: []column{{head: "sample", left: true}, {head: "phase", left: true}, {head: "amount", unit: "wt%"}, {head: "amount", unit: "mol%"}}}
-	t.columns = append(append(t.columns, r.percentColumns()...), column{head: "solution", unit: "mol%", left: true})
+	t.columns = append(append(t.columns, s.percentColumns()...), column{head: "solution", unit: "mol%", left: true})
 	for i, q := range list {
-		name := r.samples[i].Name
+		name := samples[i].Name
 		if name == "" {
 			name = "bulk"
 		}
@@ -119,9 +119,9 @@ func (r *sectionsResult) readingsText(b *strings.Builder, list []reading) {
 			continue
 		}
 		for _, p := range q.Parts {
-			mass, mole := r.share(q.Equilibrium, &p)
-			row := []string{name, r.anyPhase(p.State.Phase), fixed(100*mass, 2), fixed(100*mole, 2)}
-			t.row(append(append(row, r.percents(p.State.Composition())...), r.solution(p.State))...)
+			mass, mole := s.share(q.Equilibrium, &p)
+			row := []string{name, s.anyPhase(p.State.Phase), fixed(100*mass, 2), fixed(100*mole, 2)}
+			t.row(append(append(row, s.percents(p.State.Composition())...), s.solution(p.State))...)
 			name = ""
 		}
 	}
