@@ -148,11 +148,14 @@ func shellWord(s string) string {
 	return "'" + strings.ReplaceAll(s, "'", `'\''`) + "'"
 }
 
-// words is the origin for those who read the file's properties.
-func (o Origin) words() string {
+// words is the origin for those who read the file's properties, without the inputs
+// that the text before it names.
+func (o Origin) words(before string) string {
 	out := []string{"made by " + o.Program + " " + o.Version + " with: " + o.CommandLine("")}
 	for _, in := range o.Inputs {
-		out = append(out, in.Kind+" "+in.Name+", SHA-256 "+in.SHA256)
+		if !strings.Contains(before, in.SHA256) {
+			out = append(out, in.Kind+" "+in.Name+", SHA-256 "+in.SHA256)
+		}
 	}
 	if len(o.Sources) > 0 {
 		out = append(out, "data from: "+strings.Join(o.Sources, " | "))

@@ -57,6 +57,9 @@ func TestOriginInWords(t *testing.T) {
 			t.Errorf("%s: no %q", format, want)
 		}
 	}
+	if w := o.words("made from " + o.Inputs[0].SHA256); strings.Contains(w, o.Inputs[0].SHA256) || !strings.Contains(w, o.Inputs[1].SHA256) {
+		t.Errorf("the inputs not named before are not those in %q", w)
+	}
 	if got, want := o.CommandLine("a b.pdf"), "thalweg descend 'own system.toml' --figure 'a b.pdf'"; got != want {
 		t.Errorf("%s, want %s", got, want)
 	}

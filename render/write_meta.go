@@ -38,10 +38,11 @@ func (s *Scene) metadata(o Options) (metadata, error) {
 	}
 	origin := *s.Origin
 	origin.Epoch = epoch
+	words := clean(origin.words(m.provenance))
 	if m.provenance != "" {
-		m.provenance += "; "
+		words = m.provenance + "; " + words
 	}
-	m.provenance += clean(origin.words())
+	m.provenance = words
 	var err error
 	m.origin, err = origin.record()
 	return m, err
