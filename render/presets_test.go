@@ -7,6 +7,7 @@ import (
 
 	"thalweg/systems"
 	"thalweg/ternary"
+	joins "thalweg/ternary/join"
 	"thalweg/ternary/section"
 )
 
@@ -100,6 +101,28 @@ func TestSectionsKeepTheRulesOfPresets(t *testing.T) {
 				f.Style = st
 				t.Run(fmt.Sprintf("%s/%s/%s", p.Name, look, name), func(t *testing.T) {
 					s, err := f.Scene()
+					if err != nil {
+						t.Fatal(err)
+					}
+					keepsRules(t, st, s)
+				})
+			}
+		}
+	}
+}
+
+func TestJoinsKeepTheRulesOfPresets(t *testing.T) {
+	for name, ends := range map[string][2]ternary.Composition{
+		"di-ab-an": {ternary.Apex(1), ternary.Apex(2)}, "di-an-fo": {{0.5, 0.5, 0}, ternary.Apex(2)}, "lif-naf-kf": {ternary.Apex(0), ternary.Apex(1)},
+	} {
+		d, err := joins.Compute(figures(t)[name].Projection.System, ends[0], ends[1], joins.Options{Count: 100})
+		if err != nil {
+			t.Fatal(err)
+		}
+		for _, p := range Presets() {
+			for look, st := range looks(p, t) {
+				t.Run(fmt.Sprintf("%s/%s/%s", p.Name, look, name), func(t *testing.T) {
+					s, err := Join{Diagram: d, Style: st}.Scene()
 					if err != nil {
 						t.Fatal(err)
 					}

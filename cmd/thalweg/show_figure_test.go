@@ -50,6 +50,7 @@ func TestFiguresAreMadeAgain(t *testing.T) {
 		{"descend", "di-an-fo", "--mode=fractional", "--bulk=Di=50,An=35,Fo=15", "--width=90", "--quiet=true", "--svg-text=outlines", "--dpi=150"},
 		{"melt", "di-an-fo", "--bulk", "Di=30,An=20,Fo=50", "--style", "single-84"},
 		{"section", "di-ab-an", "--at", "1250", "--samples", "rows of samples.csv"},
+		{"join", "di-ab-an", "--to", "An=100", "--from", "Ab=100", "--read", "An=50@1400", "--read=An=20@1300", "--style", "heavy-89"},
 	} {
 		for _, ending := range figureFormats() {
 			if ending != "pdf" && i > 3 {
