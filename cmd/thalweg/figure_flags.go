@@ -135,3 +135,10 @@ func (e *env) idleFigureFlags(cmd *cobra.Command, f *figureFlags, quiet bool) {
 		}
 	}
 }
+
+// idleShade says that a figure has no fields of temperatures to shade.
+func (e *env) idleShade(f *figureFlags, quiet bool, why string) {
+	if len(f.Figures) > 0 && f.Shade == shades[1] {
+		e.notice(quiet, "%s, so that --shade %s has no effect", why, f.Shade)
+	}
+}

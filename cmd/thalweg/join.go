@@ -146,6 +146,7 @@ func joinRun(e *env, o *JoinOptions) error {
 			return err
 		}
 	}
+	e.idleShade(&o.figureFlags, o.Quiet, "temperature is an axis of the diagram")
 	bar := e.startProgress(o.Quiet, "joins", 1)
 	r.Diagram, err = e.join(s.sys, ends[0], ends[1], jo)
 	bar.stop()

@@ -114,9 +114,7 @@ func sectionRun(e *env, o *SectionOptions) error {
 			return err
 		}
 	}
-	if len(o.Figures) > 0 && o.Shade == shades[1] {
-		e.notice(o.Quiet, "a section has one temperature, so that --shade %s has no effect", o.Shade)
-	}
+	e.idleShade(&o.figureFlags, o.Quiet, "a section has one temperature")
 	bar := e.startProgress(o.Quiet, "sections", len(o.temperatures))
 	for _, t := range o.temperatures {
 		if s.outside(t + ternary.ZeroCelsius) {
