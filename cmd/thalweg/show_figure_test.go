@@ -3,6 +3,7 @@ package main
 import (
 	"bytes"
 	"os"
+	"slices"
 	"strings"
 	"testing"
 
@@ -200,6 +201,48 @@ func TestForeignCommandsAreNamed(t *testing.T) {
 	}
 	if why := e.unknownCommand([]string{"liquidus", "di-ab-an", "--ink"}); why != "" {
 		t.Errorf("a good command does not pass: %s", why)
+	}
+}
+
+// Lists survive the way from the command line into the figure and back, also
+// those whose items hold commas.
+func TestListsInCommands(t *testing.T) {
+	parsed := func(args []string) ([]string, []string) {
+		cmd := NewCmdLiquidus(newEnv(&bytes.Buffer{}, &bytes.Buffer{}), nil)
+		if err := cmd.Flags().Parse(args); err != nil {
+			t.Fatal(err)
+		}
+		list, err := cmd.Flags().GetStringSlice("without")
+		if err != nil {
+			t.Fatal(err)
+		}
+		return list, command(cmd, &subject{given: defaultSystem}, "pdf")
+	}
+	want, args := parsed([]string{"--without", `Fo,"a,b"`, "--without", `"say ""c"""`})
+	if len(want) != 3 {
+		t.Fatalf("%q", want)
+	}
+	if got, _ := parsed(args[2:]); !slices.Equal(got, want) {
+		t.Errorf("%q became %q by %q", want, got, args)
+	}
+}
+
+func TestShowSaysThatTheVersionDiffers(t *testing.T) {
+	t.Chdir(t.TempDir())
+	var out bytes.Buffer
+	e := newEnv(&out, &bytes.Buffer{})
+	e.version = "v9.9.9"
+	if code := execute(NewCmdRoot(e), e, []string{"liquidus", "di-an-fo", "--figure", "a.svg"}); code != exitDone {
+		t.Fatal(code)
+	}
+	out.Reset()
+	if execute(NewCmdRoot(e), e, []string{"show", "a.svg"}); !strings.Contains(out.String(), "Program, system and files are those it was made with") {
+		t.Errorf("the same version:\n%s", out.String())
+	}
+	out.Reset()
+	e.version = "v9.9.10"
+	if execute(NewCmdRoot(e), e, []string{"show", "a.svg"}); !strings.Contains(out.String(), "made by version v9.9.9, this is v9.9.10") {
+		t.Errorf("another version:\n%s", out.String())
 	}
 }
 
