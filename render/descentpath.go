@@ -3,6 +3,7 @@ package render
 import (
 	"fmt"
 	"math"
+	"slices"
 	"strings"
 
 	"thalweg/ternary"
@@ -60,23 +61,40 @@ func (d *drawing) newTrail(i int, p *descent.Path) trail {
 	for k, s := range p.Steps {
 		end := k == len(p.Steps)-1
 		if s.Event != "" || end || k == 0 {
-			t.note(pts[k], celsius(s.T))
+			if d.tri.shows(s.Liquid) {
+				t.note(pts[k], celsius(s.T))
+			}
 		}
 		if leaps(p, k) {
-			t.leaps = append(t.leaps, segment{pts[k-1], pts[k]})
+			for _, q := range d.inView([]Point{pts[k-1], pts[k]}) {
+				t.leaps = append(t.leaps, segment{q[0], q[len(q)-1]})
+			}
 			start = k
 			continue
 		}
 		if k > start && (s.Event != "" || end) {
-			if leg := smooth(pts[start:k+1], false, d.tri.rim()); !leg.empty() && leg.length() > 0.05 {
-				t.legs = append(t.legs, leg)
+			for _, run := range d.inView(pts[start : k+1]) {
+				if leg := smooth(run, false, d.tri.rim()); !leg.empty() && leg.length() > 0.05 {
+					t.legs = append(t.legs, leg)
+				}
 			}
 			start = k
 		}
 	}
 	t.tenths(p.Steps, pts, d.tri.basis)
+	if d.tri.view != nil {
+		t.ticks = slices.DeleteFunc(t.ticks, func(k trailTick) bool { return d.tri.rim().excess(k.at) > 0 })
+	}
 	t.solid = d.tri.rim().clip(d.bulkSolid(p))
 	return t
+}
+
+// inView is the part of a line that lies on the triangle of the page.
+func (d *drawing) inView(pts []Point) [][]Point {
+	if d.tri.view == nil {
+		return [][]Point{pts}
+	}
+	return d.tri.rim().clip(pts)
 }
 
 // leaps reports that the liquid of step k is not on the way from that of the step
@@ -138,7 +156,9 @@ func (d *drawing) paths() {
 		}
 		t := d.newTrail(i, p)
 		d.trails = append(d.trails, t)
-		d.solidPath(t)
+		if !d.fig.hides("bulk solid") {
+			d.solidPath(t)
+		}
 		d.liquidPath(t)
 	}
 	d.interleave()
@@ -246,13 +266,15 @@ func (d *drawing) pathSymbols() {
 // pathEnds rings the last liquid and boxes the final solid.
 func (d *drawing) pathEnds(l *Layer, t trail) {
 	st := d.style
-	last := d.tri.at(t.path.Steps[len(t.path.Steps)-1].Liquid)
-	d.mark(l, PathItem{Path: circle(last, 1.35), Stroke: st.stroke(st.Mark+0.2, t.colour)}, last, 1.35)
-	if !d.onNode(last) {
-		d.mark(l, PathItem{Path: circle(last, 0.45), Fill: &t.colour}, last, 0.45)
+	end := t.path.Steps[len(t.path.Steps)-1]
+	if last := d.tri.at(end.Liquid); d.tri.shows(end.Liquid) {
+		d.mark(l, PathItem{Path: circle(last, 1.35), Stroke: st.stroke(st.Mark+0.2, t.colour)}, last, 1.35)
+		if !d.onNode(last) {
+			d.mark(l, PathItem{Path: circle(last, 0.45), Fill: &t.colour}, last, 0.45)
+		}
 	}
-	if n := len(t.solid); n > 0 {
-		q := t.solid[n-1][len(t.solid[n-1])-1]
+	if bulk := d.bulkSolid(t.path); !d.fig.hides("bulk solid") && len(bulk) > 0 && d.tri.rim().excess(bulk[len(bulk)-1]) < 0.02 {
+		q := bulk[len(bulk)-1]
 		d.mark(l, PathItem{Path: square(q, 1.45), Stroke: st.stroke(st.Mark, t.colour)}, q, 1.45)
 	}
 }

@@ -34,7 +34,9 @@ func (d *drawing) fields() {
 			}
 			l.Path(PathItem{Path: p, Fill: &c, Role: "field"})
 		}
-		d.nameField(f, r)
+		if !d.fig.hides("names") {
+			d.nameField(f, r)
+		}
 	}
 }
 

@@ -236,7 +236,7 @@ func makeFigures(t testing.TB) map[string]Figure {
 	s := newIdeal(t)
 	b := ternary.Composition{0.3, 0.1, 0.6}
 	out := map[string]Figure{
-		"ideal": {Projection: s.projection(20), Samples: []Sample{{"A-1", b}, {"B-7", ternary.Composition{0.2, 0.5, 0.3}}},
+		"ideal": {Projection: s.projection(20), Samples: []Sample{{Name: "A-1", Composition: b}, {Name: "B-7", Composition: ternary.Composition{0.2, 0.5, 0.3}}},
 			Paths: []*descent.Path{s.path(b)}},
 		"crowded": {Projection: compute(t, crowded(t), 50)},
 		"wordy":   wordy(t),

@@ -2,6 +2,7 @@ package render
 
 import (
 	"fmt"
+	"math"
 	"strings"
 
 	"thalweg/ternary"
@@ -16,20 +17,53 @@ const (
 	outerMargin = 0.8  // between the outermost words and the edge of the page
 )
 
-// scale describes how the percentages of one component run along an edge:
-// anticlockwise round the triangle, each towards the apex of its component.
+// scale describes how the percentages of one component run along a side:
+// anticlockwise round the triangle, each towards the corner that is richer in it.
 // Ticks point outward along the line on which that percentage holds, so that
 // the eye can follow it inward.
 type scale struct {
 	component int
-	from, to  int   // corners: 0 % and 100 %
-	tick      Point // outward direction
+	from, to  int     // corners
+	low, high float64 // percentages at them
+	step      float64 // between numbers; ticks without one stand half-way
+	tick      Point   // outward direction
 }
 
-var scales = [3]scale{
-	{component: 2, from: 1, to: 2, tick: polar(240)}, // base
-	{component: 0, from: 2, to: 0, tick: polar(0)},   // right edge
-	{component: 1, from: 0, to: 1, tick: polar(120)}, // left edge
+// scales are those of the base, the right and the left side.
+func (t triangle) scales() (out []scale) {
+	for _, side := range [3][2]int{{1, 2}, {2, 0}, {0, 1}} {
+		s := scale{component: -1, from: side[0], to: side[1]}
+		for i := range 3 {
+			low, high := 100*t.cornerFraction(i, s.from), 100*t.cornerFraction(i, s.to)
+			if high-low > s.high-s.low+1e-9 {
+				s.component, s.low, s.high = i, low, high
+			}
+		}
+		s.step = 20
+		if !t.whole() {
+			s.step = roundStep((s.high - s.low) / 6)
+		}
+		s.tick = t.along(s.component, 3-s.from-s.to)
+		out = append(out, s)
+	}
+	return out
+}
+
+// along is the direction, out of the side opposite a corner, in which a component's
+// percentage stays the same.
+func (t triangle) along(component, corner int) Point {
+	f := [3]float64{}
+	for k := range f {
+		f[k] = t.cornerFraction(component, k)
+	}
+	// a direction d in shares, Σ d = 0, with Σ f·d = 0
+	d := ternary.Composition{f[1] - f[2], f[2] - f[0], f[0] - f[1]}
+	x, y := d.XY()
+	u := Point{x, y}.unit()
+	if u.dot(outward(corner)) < 0 {
+		u = u.times(-1)
+	}
+	return u
 }
 
 // board is a triangle being drawn: the parts that projections and isothermal
@@ -61,7 +95,7 @@ func (b *board) frame() {
 	for i, p := range rim {
 		b.words.lines.add(rigid, straight([]Point{p, rim[(i+1)%3]}).chords(3)...)
 	}
-	for _, s := range scales {
+	for _, s := range b.tri.scales() {
 		b.ticks(l, s)
 	}
 	b.apexes()
@@ -70,25 +104,39 @@ func (b *board) frame() {
 func (b *board) ticks(l *Layer, s scale) {
 	st := b.style
 	from, to := b.tri.corner(s.from), b.tri.corner(s.to)
-	for k := 1; k < 10; k++ {
-		p := from.lerp(to, float64(k)/10)
+	decimals := max(0, int(math.Ceil(-math.Log10(s.step)-1e-9)))
+	half := s.step / 2
+	middle := s.step * math.Round((s.low+s.high)/2/s.step)
+	for k := math.Floor(s.low/half+1e-6) + 1; k*half < s.high-1e-6*half; k++ {
+		v := k * half
+		p := from.lerp(to, (v-s.low)/(s.high-s.low))
+		numbered := math.Mod(k, 2) == 0
 		length := tickLength
-		if k%2 == 1 {
+		if !numbered {
 			length *= 0.6
 		}
 		q := p.plus(s.tick.times(length))
 		l.Path(PathItem{Path: Polyline([]Point{p, q}, false), Stroke: st.stroke(st.Tick, st.Line), Role: "tick"})
 		b.words.lines.add(rigid, segment{p, q})
-		if k%2 == 1 {
+		if !numbered {
 			continue
 		}
-		t := measure(PlainRuns(fmt.Sprint(10*k), st.Base, Regular))
+		number := fmt.Sprintf("%.*f", decimals, v)
+		symbol := b.tri.components[s.component].Symbol
+		runs := PlainRuns(number, st.Base, Regular)
+		if !b.tri.whole() && v == middle { // whose percentage it is, once a side
+			runs = append(PlainRuns(number+" ", st.Base, Regular), FormulaRuns(symbol, st.Base, Regular)...)
+		}
+		t := measure(runs)
 		h := t.up / 2
 		c := q.plus(s.tick.times(tickGap)).plus(Point{s.tick.X * t.w / 2, s.tick.Y * h})
-		if s.tick.Y != 0 {
+		if math.Abs(s.tick.Y) > 1e-9 {
 			c.X += sign(s.tick.X) * t.w / 8
 		}
-		b.words.fixed("tick label", fmt.Sprintf("%d %s", 10*k, b.tri.components[s.component].Symbol), t, t.baseline(c, 0), 0, st.Muted)
+		if c.X-t.w/2 < outerMargin {
+			continue // no room between a window's corner and the edge of the page
+		}
+		b.words.fixed("tick label", number+" "+symbol, t, t.baseline(c, 0), 0, st.Muted)
 	}
 }
 
@@ -138,14 +186,34 @@ type footing struct {
 	unit         wording
 }
 
-// newFooting measures the frame's words for a triangle of a given side between
-// page margins.
-func newFooting(st Style, cs ternary.Components, basis ternary.Basis, side float64) footing {
+// cornerLines are the words at a corner of the page: those of its component or,
+// where it is none, its composition.
+func (t triangle) cornerLines(st Style, corner int, room float64) []wording {
+	if i := t.pure(corner); i >= 0 {
+		return apexLines(st, t.components[i], room)
+	}
+	var words [][]Run
+	for i, c := range t.components {
+		if v := 100 * t.cornerFraction(i, corner); v > 1e-6 {
+			runs := append(FormulaRuns(c.Symbol, st.Base, Bold), PlainRuns(fmt.Sprintf(" %.4g", v), st.Base, Regular)...)
+			words = append(words, runs)
+		}
+	}
+	var out []wording
+	for _, runs := range wrap(words, room) {
+		out = append(out, measure(runs))
+	}
+	return out
+}
+
+// newFooting measures the frame's words for a triangle between page margins.
+func newFooting(st Style, tri triangle) footing {
 	var f footing
+	basis, side := tri.basis, tri.side
 	f.unit = measure(PlainRuns(basis.Unit(), st.Base, Regular))
 	room := (side + 2*(sideMargin-outerMargin) - f.unit.w - 6) / 2
-	for i, c := range cs {
-		f.lines[i] = apexLines(st, c, room)
+	for i := range 3 {
+		f.lines[i] = tri.cornerLines(st, i, room)
 	}
 	f.first = tickLength*0.87 + tickGap + CapHeight(st.Base) + 0.9 + 0.35*st.leading()
 	if room := 0.2*side + sideMargin - outerMargin - 5.5; max(f.lines[1][0].w, f.lines[2][0].w) > room {
@@ -168,7 +236,7 @@ func widest(lines []wording) float64 {
 // apexes names the three components and the basis.
 func (b *board) apexes() {
 	st := b.style
-	f := newFooting(st, b.tri.components, b.tri.basis, b.tri.side)
+	f := newFooting(st, b.tri)
 	top := b.tri.corner(0)
 	y := top.Y + apexGap + Descent(st.Base)
 	for i := len(f.lines[0]) - 1; i >= 0; i-- {
@@ -189,10 +257,13 @@ func (b *board) apexes() {
 }
 
 func (b *board) apexWord(i int, t wording, at Point, line int) {
-	c := b.tri.components[i]
-	name := c.Symbol
-	if line > 0 {
-		name = c.Name + " " + c.Formula.String()
+	name := "corner"
+	if k := b.tri.pure(i); k >= 0 {
+		c := b.tri.components[k]
+		name = c.Symbol
+		if line > 0 {
+			name = c.Name + " " + c.Formula.String()
+		}
 	}
 	b.words.fixed("apex", name, t, at, 0, b.style.Text)
 }

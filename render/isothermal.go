@@ -102,7 +102,7 @@ func (f Isothermal) panel(s *section.Section, width float64, letter string) *Sce
 	st := f.Style.orDefault()
 	cs := s.System.Components
 	tri := triangle{components: cs, basis: f.Basis, side: width - 2*sideMargin}
-	foot := newFooting(st, cs, f.Basis, tri.side)
+	foot := newFooting(st, tri)
 	tri.origin = Point{sideMargin, outerMargin + foot.below}
 	height := tri.origin.Y + tri.height() + foot.above
 	p := &panel{board: newBoard(st, tri, width, height, isothermalLayers...), s: s}

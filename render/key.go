@@ -39,13 +39,30 @@ func newKey(f Figure, st Style, placed []placedSample, width float64) table {
 	k := keyMaker{style: st, pr: f.Projection, fig: f, placed: placed, width: width,
 		tri:   triangle{components: f.Projection.System.Components, basis: f.Basis},
 		table: table{leading: st.leading(), size: st.Base, ruled: st.stroke(st.Rule, st.Muted)}}
+	if f.hides("key") {
+		return k.table
+	}
 	k.nodes()
+	k.groups()
 	k.samples()
-	k.isotherms()
+	if !f.Plain {
+		k.explain()
+	}
 	k.shade()
+	return k.table
+}
+
+// explain says what symbols stand for.
+func (k *keyMaker) explain() {
+	for i, p := range k.fig.Paths {
+		if p != nil {
+			k.pathLines(i)
+			break
+		}
+	}
+	k.isotherms()
 	k.diamonds()
 	k.solids()
-	return k.table
 }
 
 func (k *keyMaker) text(s string, x float64, font Font) entry {
@@ -227,11 +244,25 @@ func (k *keyMaker) samples() {
 			}})
 		k.events(p)
 	}
-	for i, p := range k.fig.Paths {
-		if p != nil {
-			k.pathLines(i)
-			break
+}
+
+// groups explains the symbols and colours of samples.
+func (k *keyMaker) groups() {
+	for i, g := range k.fig.Groups {
+		gap := 0.0
+		if i == 0 {
+			gap = keyBlock
 		}
+		colour := k.style.Line
+		if g.Colour > 0 {
+			colour = k.style.pathColour(g.Colour - 1)
+		}
+		k.table.add(tableLine{gap: gap,
+			entries: []entry{{runs: PlainRuns(g.Name, k.style.Base, Regular), x: keyIndent, colour: k.style.Text}},
+			symbol: func(l *Layer, at Point) {
+				q := Point{at.X + sampleRadius*1.3, at.Y + CapHeight(k.style.Base)/2}
+				l.Path(PathItem{Path: sampleShape(max(0, g.Symbol-1), q, sampleRadius), Fill: &colour, Role: "key symbol"})
+			}})
 	}
 }
 
@@ -308,15 +339,21 @@ func (k *keyMaker) pathLines(i int) {
 			break
 		}
 	}
-	put("bulk of the solids", 0.2, func(l *Layer, o Point) {
-		l.Path(PathItem{Path: line(o), Stroke: st.dashed(st.SolidPath, c, st.solidDash(i)), Role: "key symbol"})
-	})
+	if k.fig.hides("bulk solid") {
+		last = strings.Split(last, ";")[0]
+	} else {
+		put("bulk of the solids", 0.2, func(l *Layer, o Point) {
+			l.Path(PathItem{Path: line(o), Stroke: st.dashed(st.SolidPath, c, st.solidDash(i)), Role: "key symbol"})
+		})
+	}
 	put(last, 0.2, func(l *Layer, o Point) {
 		y := o.Y + XHeight(st.Base)/2
 		q := Point{o.X + 2, y}
 		l.Path(PathItem{Path: circle(q, 1.35), Stroke: st.stroke(st.Mark+0.2, c), Role: "key symbol"})
 		l.Path(PathItem{Path: circle(q, 0.45), Fill: &c, Role: "key symbol"})
-		l.Path(PathItem{Path: square(Point{o.X + 6, y}, 1.3), Stroke: st.stroke(st.Mark, c), Role: "key symbol"})
+		if !k.fig.hides("bulk solid") {
+			l.Path(PathItem{Path: square(Point{o.X + 6, y}, 1.3), Stroke: st.stroke(st.Mark, c), Role: "key symbol"})
+		}
 	})
 }
 

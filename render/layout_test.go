@@ -429,7 +429,7 @@ func TestFigureErrors(t *testing.T) {
 		{"no projection", Figure{}},
 		{"too narrow", Figure{Projection: p, WidthMM: 20}},
 		{"not a number", Figure{Projection: p, WidthMM: math.NaN()}},
-		{"sample outside", Figure{Projection: p, Samples: []Sample{{"X", ternary.Composition{1.5, -0.5, 0}}}}},
+		{"sample outside", Figure{Projection: p, Samples: []Sample{{Name: "X", Composition: ternary.Composition{1.5, -0.5, 0}}}}},
 	} {
 		if _, err := c.f.Scene(); err == nil {
 			t.Errorf("%s: no error", c.name)

@@ -75,7 +75,10 @@ func (d *drawing) points() {
 			lab.spots = about(q, ringRadius, 0, t, 0.5, 0.9, 1.5, 2.2)
 		case n.Edge >= 0:
 			d.mark(l, PathItem{Path: circle(q, dotRadius), Fill: &st.Line}, q, dotRadius)
-			lab.spots = outside(q, outward(n.Edge), t)
+			lab.spots = about(q, dotRadius, 0, t, 0.5, 0.9, 1.5, 2.2)
+			if side := d.tri.sideOf(n.Edge); side >= 0 {
+				lab.spots = outside(q, outward(side), t)
+			}
 			lab.rank, lab.must = 3, false
 		default:
 			d.mark(l, PathItem{Path: circle(q, dotRadius), Fill: &st.Line}, q, dotRadius)
@@ -154,7 +157,7 @@ func (d *drawing) compoundDots() (out []*compoundDot) {
 	places := compoundPlaces(d.pr.System)
 	for i, s := range d.pr.System.Solids {
 		c, ok := places[i]
-		if !ok {
+		if !ok || !d.tri.shows(c) {
 			continue
 		}
 		q := d.tri.at(c)

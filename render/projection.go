@@ -18,7 +18,11 @@ type Figure struct {
 	Projection *liquidus.Projection
 	Paths      []*descent.Path
 	Samples    []Sample
+	Groups     []SampleGroup // explained in the key
 	Basis      ternary.Basis
+	View       *View    // nil for the whole triangle, the first component on top
+	Hide       []string // layers to leave out, of Hideable
+	Plain      bool     // the key holds points and events, but does not explain symbols
 	Style      Style
 	WidthMM    float64
 	Provenance string // goes into the file's metadata
@@ -85,10 +89,18 @@ func (f Figure) draw() (*drawing, error) {
 	if err := f.check(); err != nil {
 		return nil, err
 	}
-	if f.shade, err = newShading(f, st); err != nil {
+	if f, st, err = f.hidden(st); err != nil {
 		return nil, err
 	}
-	lay := f.layout(st)
+	tri, err := triangle{components: f.Projection.System.Components, basis: f.Basis}.look(f.View)
+	if err != nil {
+		return nil, err
+	}
+	f.Projection = tri.cutProjection(f.Projection)
+	if f.shade, err = newShading(f, st, tri); err != nil {
+		return nil, err
+	}
+	lay := f.layout(st, tri)
 	d := &drawing{board: newBoard(st, lay.tri, f.WidthMM, lay.height, projectionLayers...), fig: f, pr: f.Projection, placed: lay.placed}
 	for _, x := range d.pr.Fields {
 		d.regions = append(d.regions, d.region(x))
@@ -142,10 +154,8 @@ const (
 	keyMargin  = 1.0   // between key and edge of the page
 )
 
-func (f Figure) layout(st Style) layout {
-	cs := f.Projection.System.Components
-	lay := layout{placed: placeSamples(f, st)}
-	lay.tri = triangle{components: cs, basis: f.Basis}
+func (f Figure) layout(st Style, tri triangle) layout {
+	lay := layout{tri: tri, placed: placeSamples(f, st)}
 	if f.WidthMM >= besideFrom {
 		f.layoutBeside(st, &lay)
 	} else {
@@ -156,7 +166,7 @@ func (f Figure) layout(st Style) layout {
 
 func (f Figure) layoutUnder(st Style, lay *layout) {
 	lay.tri.side = f.WidthMM - 2*sideMargin
-	foot := newFooting(st, lay.tri.components, f.Basis, lay.tri.side)
+	foot := newFooting(st, lay.tri)
 	lay.keyW = f.WidthMM - 2*keyMargin
 	lay.key = newKey(f, st, lay.placed, lay.keyW)
 	under := 0.0
@@ -180,7 +190,7 @@ func (f Figure) layoutBeside(st Style, lay *layout) {
 		l.keyW = max(share*f.WidthMM, least)
 		l.key = newKey(f, st, l.placed, l.keyW)
 		f.fitBeside(st, &l)
-		block := l.height - l.tri.origin.Y + newFooting(st, l.tri.components, f.Basis, l.tri.side).below
+		block := l.height - l.tri.origin.Y + newFooting(st, l.tri).below
 		score := l.tri.side - 3*max(0, l.height-1.1*block)
 		if score > bestScore {
 			best, bestScore = l, score
@@ -196,7 +206,7 @@ func (f Figure) fitBeside(st Style, lay *layout) {
 	clear := 9.0 // for numbers outside the right edge
 	tall := lay.key.height()
 	for lay.tri.side = 0.68 * f.WidthMM; lay.tri.side > 0.5*f.WidthMM; lay.tri.side -= 1 {
-		foot := newFooting(st, lay.tri.components, f.Basis, lay.tri.side)
+		foot := newFooting(st, lay.tri)
 		h := foot.above + lay.tri.height() + foot.below + outerMargin
 		lay.height = max(h, tall+2*outerMargin)
 		lay.tri.origin = Point{sideMargin, lay.height - foot.above - lay.tri.height()}
@@ -241,7 +251,7 @@ func (d *drawing) flagTexts() []string {
 func (d *drawing) flags() {
 	st := d.style
 	top := d.tri.corner(0)
-	apex := newFooting(st, d.tri.components, d.tri.basis, d.tri.side).lines[0]
+	apex := newFooting(st, d.tri).lines[0]
 	width := max(18, top.X-widest(apex)/2-outerMargin-2.5)
 	y := d.scene.Height - outerMargin - CapHeight(st.Base)
 	for _, s := range d.flagTexts() {
@@ -339,6 +349,11 @@ func (d *drawing) describe(left []string) {
 		if p.trail >= 0 {
 			path := d.fig.Paths[p.trail]
 			fmt.Fprintf(&s, " Path of %s from %.0f to %.0f °C.", process(path), celsius(path.Steps[0].T), celsius(path.EndT))
+		}
+	}
+	for _, p := range d.placed {
+		if p.Name != "" && !d.tri.shows(p.Composition) {
+			left = append(left, p.Name+" (outside the view)")
 		}
 	}
 	if len(left) > 0 {

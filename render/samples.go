@@ -10,6 +10,14 @@ import (
 type Sample struct {
 	Name        string
 	Composition ternary.Composition // mole fractions of the components
+	Symbol      int                 // 1, 2, …: the same symbol for all of one kind; 0 for one after another
+	Colour      int                 // likewise; 0 for the colour of lines
+}
+
+// SampleGroup is what a symbol or a colour of samples stands for, as the key has it.
+type SampleGroup struct {
+	Name           string
+	Symbol, Colour int
 }
 
 // placedSample is a sample with its symbol.
@@ -27,6 +35,12 @@ func placeSamples(f Figure, st Style) []placedSample {
 	taken := make([]bool, len(f.Paths))
 	for _, s := range f.Samples {
 		p := placedSample{Sample: s, colour: st.Line, shape: len(out), trail: -1}
+		if s.Symbol > 0 {
+			p.shape = s.Symbol - 1
+		}
+		if s.Colour > 0 {
+			p.colour = st.pathColour(s.Colour - 1)
+		}
 		for i, path := range f.Paths {
 			if path != nil && path.Bulk.Distance(s.Composition) < 1e-4 {
 				taken[i] = true
@@ -37,9 +51,17 @@ func placeSamples(f Figure, st Style) []placedSample {
 		}
 		out = append(out, p)
 	}
+	shape := len(out)
+	if len(f.Groups) > 0 { // a symbol that stands for no group
+		shape = 0
+		for _, g := range f.Groups {
+			shape = max(shape, g.Symbol)
+		}
+	}
 	for i, path := range f.Paths {
 		if path != nil && !taken[i] {
-			out = append(out, placedSample{Sample: Sample{Composition: path.Bulk}, colour: st.pathColour(i), shape: len(out), trail: i})
+			out = append(out, placedSample{Sample: Sample{Composition: path.Bulk}, colour: st.pathColour(i), shape: shape, trail: i})
+			shape++
 		}
 	}
 	return out
@@ -73,6 +95,9 @@ func (d *drawing) samples() {
 	l := d.scene.Layer("samples")
 	st := d.style
 	for _, s := range d.placed {
+		if !d.tri.shows(s.Composition) {
+			continue
+		}
 		q := d.tri.at(s.Composition)
 		c := s.colour
 		d.mark(l, PathItem{Path: sampleShape(s.shape, q, sampleRadius), Fill: &c, Stroke: st.stroke(0.5, white)}, q, sampleRadius*1.1)

@@ -25,7 +25,7 @@ type shading struct {
 }
 
 // newShading takes the temperatures. It is nil for a style that does not shade.
-func newShading(f Figure, st Style) (*shading, error) {
+func newShading(f Figure, st Style, tri triangle) (*shading, error) {
 	if len(st.Ramp) == 0 {
 		return nil, nil
 	}
@@ -37,7 +37,11 @@ func newShading(f Figure, st Style) (*shading, error) {
 	s := &shading{low: math.Inf(1), high: math.Inf(-1), ramp: st.Ramp}
 	for i := 0; i <= shadeCells; i++ {
 		for j := 0; j <= shadeCells-i; j++ {
-			x, err := cs.Composition([3]float64{float64(i), float64(shadeCells - i - j), float64(j)}, f.Basis)
+			at := [3]float64{float64(i) / shadeCells, float64(shadeCells-i-j) / shadeCells, float64(j) / shadeCells}
+			if tri.view != nil {
+				at = tri.view.fractions(at)
+			}
+			x, err := cs.Composition(at, f.Basis)
 			if err != nil {
 				return nil, fmt.Errorf("the net for the shading: %w", err)
 			}

@@ -18,6 +18,7 @@ func TestExamplesWork(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
+	writeFile(t, "plan.toml", "system = \"di-ab-an\"\n[[panel]]\nkind = \"projection\"\n")
 	writeFile(t, "my-system.toml", string(f.Raw()))
 	lines := strings.Split(introduction, "\n")
 	for _, cmd := range verbs() {

@@ -8,6 +8,7 @@ import (
 	"io"
 	"io/fs"
 	"path/filepath"
+	"slices"
 	"strings"
 	"unicode/utf8"
 
@@ -18,7 +19,8 @@ import (
 type sample struct {
 	Name string
 	X    ternary.Composition
-	Sum  float64 // of the components as written
+	Sum  float64  // of the components as written
+	More []string // the values in the further columns that were asked for
 }
 
 // maxSamples is the size in bytes beyond which a table of samples is taken for
@@ -31,7 +33,7 @@ const nameColumn = "name"
 // readSamples reads a CSV file with a header: name and the three component
 // symbols, in any order. Amounts are in basis b. Lines that begin with # are
 // skipped. Every error names file, line and column. data are the bytes read.
-func readSamples(path string, cs ternary.Components, b ternary.Basis) (list []sample, data []byte, err error) {
+func readSamples(path string, cs ternary.Components, b ternary.Basis, more ...string) (list []sample, data []byte, err error) {
 	whole := func(what, remedy string, err error) ([]sample, []byte, error) {
 		return nil, nil, &usageError{Where: path, What: what, Remedy: remedy, Err: err}
 	}
@@ -54,7 +56,7 @@ func readSamples(path string, cs ternary.Components, b ternary.Basis) (list []sa
 	case !utf8.Valid(table):
 		return whole("it is not UTF-8 text", "save it as CSV in UTF-8", nil)
 	}
-	r := &sampleReader{path: path, cs: cs, basis: b, csv: csv.NewReader(bytes.NewReader(table)), names: map[string]int{}}
+	r := &sampleReader{path: path, cs: cs, basis: b, csv: csv.NewReader(bytes.NewReader(table)), names: map[string]int{}, more: more}
 	list, err = r.read()
 	return list, data, err
 }
@@ -69,8 +71,10 @@ type sampleReader struct {
 	cs     ternary.Components
 	basis  ternary.Basis
 	csv    *csv.Reader
-	name   int    // column of the names
-	column [3]int // columns of the components
+	name   int      // column of the names
+	column [3]int   // columns of the components
+	more   []string // headings of further columns to be read
+	moreAt []int
 	width  int
 	names  map[string]int // line of each name
 }
@@ -130,12 +134,18 @@ func (r *sampleReader) header(rec []string) error {
 		return r.fail(line, 0, "the columns are not separated by commas", "save the table with commas and decimal points")
 	}
 	r.name, r.column, r.width = -1, [3]int{-1, -1, -1}, len(rec)
+	r.moreAt = slices.Repeat([]int{-1}, len(r.more))
 	for k, head := range rec {
 		head = strings.TrimSpace(head)
 		place := &r.name
 		if i, ok := r.cs.Index(head); ok {
 			place = &r.column[i]
+		} else if i := slices.Index(r.more, head); i >= 0 {
+			place = &r.moreAt[i]
 		} else if head != nameColumn {
+			if len(r.more) > 0 {
+				continue // a table with columns of its own
+			}
 			return r.fail(line, k, fmt.Sprintf("the heading %q is unknown", head), "the columns are "+sampleHeader(r.cs))
 		}
 		if *place >= 0 {
@@ -149,6 +159,11 @@ func (r *sampleReader) header(rec []string) error {
 	for i, k := range r.column {
 		if k < 0 {
 			return r.fail(line, len(rec)-1, "there is no column "+r.cs[i].Symbol, "the columns are "+sampleHeader(r.cs)+"; write 0 where a sample has none of a component")
+		}
+	}
+	for i, k := range r.moreAt {
+		if k < 0 {
+			return r.fail(line, len(rec)-1, "there is no column "+r.more[i], "add it, or name another column")
 		}
 	}
 	return nil
@@ -169,6 +184,9 @@ func (r *sampleReader) row(rec []string) (s sample, err error) {
 		return s, r.fail(at(r.name), r.name, fmt.Sprintf("the name %q stands already in line %d", s.Name, first), "give each sample its own name")
 	}
 	r.names[s.Name] = line
+	for _, k := range r.moreAt {
+		s.More = append(s.More, strings.TrimSpace(rec[k]))
+	}
 	var amounts [3]float64
 	for i, k := range r.column {
 		if amounts[i], err = parseAmount(rec[k]); err != nil {
@@ -183,8 +201,8 @@ func (r *sampleReader) row(rec []string) (s sample, err error) {
 }
 
 // loadSamples reads the table and says what was normalised.
-func (e *env) loadSamples(path string, s *subject, quiet bool) ([]sample, error) {
-	list, data, err := readSamples(path, s.sys.Components, s.basis)
+func (e *env) loadSamples(path string, s *subject, quiet bool, more ...string) ([]sample, error) {
+	list, data, err := readSamples(path, s.sys.Components, s.basis, more...)
 	if err != nil {
 		return nil, err
 	}
