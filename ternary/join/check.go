@@ -75,6 +75,9 @@ func (e *engine) attempt(xs, at []float64) (*Diagram, []Point, error) {
 			return nil, nil, err
 		}
 	}
+	for i := 1; i < len(slabs); i++ {
+		stitch(&slabs[i-1], &slabs[i])
+	}
 	d := &Diagram{System: e.sys, From: e.from, To: e.to, TMin: e.tMin, TMax: e.tMax}
 	if err := e.build(d, slabs); err != nil {
 		return nil, nil, err

@@ -1,6 +1,7 @@
 package join
 
 import (
+	"cmp"
 	"fmt"
 	"math"
 	"slices"
@@ -31,6 +32,7 @@ type change struct {
 	above, below []int
 	eq           *tangent.Equilibrium // the state there, nil if it was only bracketed
 	zero         int                  // the part of eq without amount
+	limit        bool                 // not a change, but a limit of T
 }
 
 // column is all changes at one X, by falling T.
@@ -110,7 +112,7 @@ func (e *engine) column(x float64) (*column, error) {
 // split finds the changes between two temperatures, hi above lo.
 func (e *engine) split(c *column, hi, lo *tangent.Equilibrium, depth int) error {
 	above, below := phasesOf(hi), phasesOf(lo)
-	if slices.Equal(above, below) {
+	if e.same(hi, lo) {
 		return nil
 	}
 	if hi.T-lo.T < columnLeast || depth > 60 {
@@ -125,18 +127,17 @@ func (e *engine) split(c *column, hi, lo *tangent.Equilibrium, depth int) error 
 		if err1 != nil || err2 != nil {
 			continue
 		}
-		pu, pd := phasesOf(u), phasesOf(d)
-		if slices.Equal(pu, pd) {
+		if e.same(u, d) {
 			continue
 		}
-		if !slices.Equal(pu, above) {
+		if !e.same(hi, u) {
 			if err := e.split(c, hi, u, depth+1); err != nil {
 				return err
 			}
 		}
-		k.above, k.below = pu, pd
+		k.above, k.below = phasesOf(u), phasesOf(d)
 		c.changes = append(c.changes, k)
-		if !slices.Equal(pd, below) {
+		if !e.same(d, lo) {
 			return e.split(c, d, lo, depth+1)
 		}
 		return nil
@@ -160,6 +161,10 @@ func (e *engine) candidates(hi, lo *tangent.Equilibrium) (out []change) {
 			out = append(out, change{T: ev.T, eq: ev, zero: zero})
 		}
 	}
+	if i := e.leapt(hi, lo); i >= 0 {
+		try(hi, append(slices.Clone(hi.Parts), lo.Parts[i]), len(hi.Parts))
+		try(lo, append(slices.Clone(lo.Parts), hi.Parts[i]), len(lo.Parts))
+	}
 	for _, i := range lacking(lo.Parts, hi.Parts) { // comes in on cooling
 		try(hi, append(slices.Clone(hi.Parts), lo.Parts[i]), len(hi.Parts))
 	}
@@ -171,20 +176,37 @@ func (e *engine) candidates(hi, lo *tangent.Equilibrium) (out []change) {
 }
 
 // lacking are the indices of the parts of a whose phase b does not hold, or holds
-// once less.
+// once less. Of two forms of a phase the one further from the form in b comes first;
+// the other follows, for far from the change it may be the nearer one.
 func lacking(a, b []tangent.Part) (out []int) {
-	spare := map[int]int{}
+	count := map[int]int{}
+	for _, p := range a {
+		count[p.State.Phase]++
+	}
 	for _, p := range b {
-		spare[p.State.Phase]++
+		count[p.State.Phase]--
+	}
+	distance := func(i int) float64 {
+		d := math.Inf(1)
+		for _, p := range b {
+			if p.State.Phase == a[i].State.Phase {
+				d = math.Min(d, spread(p.State.Y, a[i].State.Y))
+			}
+		}
+		return d
 	}
 	for i, p := range a {
-		if spare[p.State.Phase] > 0 {
-			spare[p.State.Phase]--
-			continue
+		if count[p.State.Phase] > 0 {
+			out = append(out, i)
 		}
-		out = append(out, i)
 	}
+	slices.SortStableFunc(out, func(i, k int) int { return cmp.Compare(distance(k), distance(i)) })
 	return out
+}
+
+// spread is the distance of two compositions in end-member fractions.
+func spread(a, b [3]float64) float64 {
+	return math.Abs(a[0]-b[0]) + math.Abs(a[1]-b[1]) + math.Abs(a[2]-b[2])
 }
 
 // sound reports that a state is one of equilibrium, with the part zero about to
@@ -204,7 +226,7 @@ func (e *engine) sound(q *tangent.Equilibrium, zero int) bool {
 }
 
 func alike(a, b [3]float64) bool {
-	return math.Abs(a[0]-b[0])+math.Abs(a[1]-b[1])+math.Abs(a[2]-b[2]) < 1e-5
+	return spread(a, b) < 1e-5
 }
 
 // limits chooses the range of temperatures: from below the last liquid to above

@@ -9,6 +9,7 @@
 //
 //	types.go    what a diagram is
 //	column.go   all changes of the assemblage with T at one composition
+//	leap.go     a phase that leaps from one of its forms to another
 //	station.go  where between two columns the sequence of assemblages changes
 //	slab.go     the lines between two stations, followed from X to X
 //	field.go    fields out of slabs, vertical lines

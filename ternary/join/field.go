@@ -11,6 +11,10 @@ import (
 // numbers wherever a point is used.
 type edge struct{ a, b Point }
 
+// touchTol is the length, in K, of the stretch of a station on which two cells are
+// neighbours: a level has the same temperature on either side only to rounding.
+const touchTol = 1e-6
+
 // cell is the part of a field within a slab.
 type cell struct {
 	phases []int
@@ -54,8 +58,7 @@ func (e *engine) build(d *Diagram, slabs []slab) error {
 	// that touch at the station are one
 	group := make([][]int, len(all))
 	parent := []int{}
-	var find func(int) int
-	find = func(i int) int {
+	find := func(i int) int {
 		for parent[i] != i {
 			i = parent[i]
 		}
@@ -73,7 +76,7 @@ func (e *engine) build(d *Diagram, slabs []slab) error {
 			for m := range all[i] {
 				lo1, hi1 := all[i-1][k].side(true)
 				lo2, hi2 := all[i][m].side(false)
-				if math.Min(hi1, hi2) > math.Max(lo1, lo2) && slices.Equal(all[i-1][k].phases, all[i][m].phases) && !e.parted(slabs[i].from, all[i][m].phases) {
+				if math.Min(hi1, hi2)-math.Max(lo1, lo2) > touchTol && slices.Equal(all[i-1][k].phases, all[i][m].phases) && !e.parted(slabs[i].from, all[i][m].phases) {
 					parent[find(group[i][m])] = find(group[i-1][k])
 				}
 			}
@@ -262,7 +265,7 @@ func (e *engine) vertical(d *Diagram, x float64, left, right []cell) {
 			lo1, hi1 := left[i].side(true)
 			lo2, hi2 := right[k].side(false)
 			lo, hi := math.Max(lo1, lo2), math.Min(hi1, hi2)
-			if hi-lo > 1e-3 && (!slices.Equal(left[i].phases, right[k].phases) || e.parted(x, left[i].phases)) {
+			if hi-lo > stitchTol && (!slices.Equal(left[i].phases, right[k].phases) || e.parted(x, left[i].phases)) {
 				d.Lines = append(d.Lines, Line{Above: left[i].phases, Below: right[k].phases, Points: []Point{{x, lo}, {x, hi}}, Vertical: true})
 			}
 		}

@@ -9,7 +9,12 @@ import (
 
 const (
 	// endStep is how far from a station, in X, the ends of lines are evaluated.
-	endStep = 1e-9
+	endStep = 1e-7
+	// sameEnd is the difference of temperature, in K, of two ends at a station that
+	// are one point.
+	sameEnd = 1e-4
+	// stitchTol is that of the ends of one line on either side of a station.
+	stitchTol = 0.05
 	// levelTol is the difference of temperature, relative, within which a reaction
 	// at constant T is found again at another X.
 	levelTol = 1e-8
@@ -155,17 +160,21 @@ func (e *engine) patch(s *slab, k int, at []float64, ahead, back []change) ([]Po
 	return e.ends(s, k, e.bent(pts, back, at[m:])), true
 }
 
-// ends adds the points at the stations, evaluated a little beside them.
+// ends adds the points at the stations, carried on from two points a little beside
+// them: at a station itself a part has no amount, or a component is absent.
 func (e *engine) ends(s *slab, k int, pts []Point) []Point {
-	beside := func(c *column, station, x float64) Point {
+	beside := func(c *column, station float64) Point {
+		step := math.Copysign(math.Min(endStep, math.Abs(c.x-station)/4), c.x-station)
 		p := Point{station, c.changes[k].T}
-		if q, ok := e.follow(c.changes[k], x); ok && math.Abs(q.T-p.T) < 5 {
+		if q, ok := e.follow(c.changes[k], station+2*step); ok && math.Abs(q.T-p.T) < 5 {
 			p.T = q.T
+			if r, ok := e.follow(q, station+step); ok {
+				p.T = 2*r.T - q.T
+			}
 		}
 		return p
 	}
-	first := beside(s.left, s.from, s.from+math.Min(endStep, (s.left.x-s.from)/2))
-	last := beside(s.right, s.to, s.to-math.Min(endStep, (s.to-s.right.x)/2))
+	first, last := beside(s.left, s.from), beside(s.right, s.to)
 	return append(slices.Insert(pts, 0, first), last)
 }
 
@@ -239,7 +248,25 @@ func (e *engine) bracketLine(s *slab, k int, xs []float64) ([]Point, error) {
 		}
 		pts = append(pts, Point{x, T})
 	}
-	return append(pts, Point{s.to, b.T}), nil
+	pts = append(pts, Point{s.to, b.T})
+	straighten(pts)
+	return pts, nil
+}
+
+// straighten carries a line on to the stations, where the temperatures of its ends are
+// those of the columns beside them.
+func straighten(pts []Point) {
+	n := len(pts)
+	if n < 4 {
+		return
+	}
+	on := func(end, a, b *Point) {
+		if math.Abs(end.X-a.X) <= 2*stationStep && a.X != b.X {
+			end.T = a.T + (b.T-a.T)/(b.X-a.X)*(end.X-a.X)
+		}
+	}
+	on(&pts[0], &pts[1], &pts[2])
+	on(&pts[n-1], &pts[n-2], &pts[n-3])
 }
 
 // bracket finds the temperature near a guess between two assemblages.
@@ -269,19 +296,56 @@ func (e *engine) bracket(x, guess float64, above, below []int) (float64, bool) {
 	return 0, false
 }
 
-// close lets lines that meet at a station have one temperature there: their ends
-// were evaluated a little beside it.
+// close lets lines that meet at a station have one temperature there, that of a level
+// if one of them is: the others' ends were evaluated a little beside it.
 func (e *engine) close(s *slab) {
-	for _, end := range []bool{false, true} {
+	for _, c := range [2]*column{s.left, s.right} {
 		at := func(k int) *Point {
-			if end {
+			if c == s.right {
 				return &s.lines[k][len(s.lines[k])-1]
 			}
 			return &s.lines[k][0]
 		}
-		for k := 1; k < len(s.lines); k++ {
-			if d := at(k-1).T - at(k).T; d < 0 || d < 1e-4 {
-				at(k).T = at(k - 1).T
+		for k := 0; k < len(s.lines); {
+			n, T := k+1, at(k).T
+			if c.changes[k].level() {
+				T = c.changes[k].T
+			}
+			for ; n < len(s.lines) && at(n).T > at(n-1).T-sameEnd; n++ {
+				if c.changes[n].level() {
+					T = c.changes[n].T
+				}
+			}
+			for ; k < n; k++ {
+				at(k).T = math.Max(e.tMin, math.Min(e.tMax, T))
+			}
+		}
+	}
+}
+
+// stitch gives a line that goes on beyond a station one temperature there.
+func stitch(a, b *slab) {
+	for i, p := range a.lines {
+		for k, q := range b.lines {
+			c, d := &a.right.changes[i], &b.left.changes[k]
+			end, start := &p[len(p)-1], &q[0]
+			if !slices.Equal(c.above, d.above) || !slices.Equal(c.below, d.below) || math.Abs(end.T-start.T) > stitchTol {
+				continue
+			}
+			was, now := end.T, start.T
+			T := was
+			if d.level() && !c.level() {
+				T = now
+			}
+			for _, o := range a.lines { // with the ends that it meets
+				if o[len(o)-1].T == was {
+					o[len(o)-1].T = T
+				}
+			}
+			for _, o := range b.lines {
+				if o[0].T == now {
+					o[0].T = T
+				}
 			}
 		}
 	}

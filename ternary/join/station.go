@@ -242,16 +242,13 @@ func (e *engine) meeting(a, b *column) (float64, bool) {
 	for last < len(p)-first && last < len(q)-first && slices.Equal(p[len(p)-1-last], q[len(q)-1-last]) {
 		last++
 	}
-	if first == 0 || last == 0 {
-		return 0, false
-	}
 	for _, side := range []struct {
 		c    *column
 		n    int
 		away float64
 	}{{a, len(p), b.x}, {b, len(q), a.x}} {
 		upper, lower := first-1, side.n-1-last
-		if lower <= upper || lower >= len(side.c.changes) {
+		if lower <= upper {
 			continue
 		}
 		if x, ok := e.meet(side.c, upper, lower, side.away); ok {
@@ -261,10 +258,17 @@ func (e *engine) meeting(a, b *column) (float64, bool) {
 	return 0, false
 }
 
-// meet follows two lines from a column towards X until they meet, by secants.
+// meet follows two lines from a column towards X until they meet, by secants. Beyond
+// the first and the last line are the limits of T.
 func (e *engine) meet(c *column, upper, lower int, away float64) (float64, bool) {
-	u, l := c.changes[upper], c.changes[lower]
-	if u.eq == nil || l.eq == nil {
+	u, l := change{T: e.tMax, limit: true}, change{T: e.tMin, limit: true}
+	if upper >= 0 {
+		u = c.changes[upper]
+	}
+	if lower < len(c.changes) {
+		l = c.changes[lower]
+	}
+	if u.eq == nil && !u.limit || l.eq == nil && !l.limit || u.limit && l.limit {
 		return 0, false
 	}
 	x0, f0 := c.x, u.T-l.T
@@ -299,6 +303,9 @@ func (e *engine) meet(c *column, upper, lower int, away float64) (float64, bool)
 // follow moves a change to another X, for better or worse: the state need not be
 // one of equilibrium there.
 func (e *engine) follow(k change, x float64) (change, bool) {
+	if k.limit {
+		return k, true
+	}
 	ev, err := tangent.Event(e.sys, mix(e.from, e.to, x), k.T, k.eq.Mu, k.eq.Parts, k.zero)
 	if err != nil {
 		return k, false
