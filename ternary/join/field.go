@@ -86,21 +86,22 @@ func (e *engine) build(d *Diagram, slabs []slab) error {
 	phases := map[int][]int{}
 	var order []int
 	for i := range all {
+		var cuts [2][]float64
+		for side, j := range [2]int{i - 1, i + 1} {
+			if j >= 0 && j < len(all) {
+				for m := range all[j] {
+					lo, hi := all[j][m].side(side == 0)
+					cuts[side] = append(cuts[side], lo, hi)
+				}
+			}
+			sort.Float64s(cuts[side])
+		}
 		for k := range all[i] {
 			g := find(group[i][k])
 			if edges[g] == nil {
 				edges[g] = map[edge]bool{}
 				phases[g] = all[i][k].phases
 				order = append(order, g)
-			}
-			var cuts [2][]float64
-			for side, j := range [2]int{i - 1, i + 1} {
-				if j >= 0 && j < len(all) {
-					for m := range all[j] {
-						lo, hi := all[j][m].side(side == 0)
-						cuts[side] = append(cuts[side], lo, hi)
-					}
-				}
 			}
 			all[i][k].walk(&slabs[i], cuts, func(a, b Point) {
 				if a == b {
@@ -149,10 +150,9 @@ func (c *cell) walk(s *slab, cuts [2][]float64, visit func(a, b Point)) {
 	}
 }
 
-// divided is the range lo to hi with the cuts within it.
+// divided is the range lo to hi with the cuts, in order, within it.
 func divided(lo, hi float64, cuts []float64) []float64 {
 	out := []float64{lo}
-	sort.Float64s(cuts)
 	for _, v := range cuts {
 		if v > out[len(out)-1] && v < hi {
 			out = append(out, v)

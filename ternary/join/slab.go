@@ -24,6 +24,9 @@ const (
 	// between two of its points; bendDepth bounds the halvings.
 	bendTol   = 5e-5
 	bendDepth = 10
+	// soundEvery is how many points of a line go by between two at which all phases
+	// are asked whether they lie above the plane.
+	soundEvery = 4
 	// strayTol is by how many kelvin a line may miss the column at its end.
 	strayTol = 1e-6
 )
@@ -97,20 +100,51 @@ func (e *engine) traceLine(s *slab, k int, xs []float64) ([]Point, bool) {
 // run follows a change over the given X, forward or backward, as far as it goes.
 // It does not go where the phase that comes or goes becomes one with another.
 func (e *engine) run(k change, at []float64, dir int) (out []change) {
-	phases := partPhases(&k)
+	var xs [2]float64 // of the last two
+	sound := 0        // so many are known to be states of equilibrium
 	for n := range at {
 		x := at[n]
 		if dir < 0 {
 			x = at[len(at)-1-n]
 		}
-		q, ok := e.follow(k, x)
-		if !ok || !slices.Equal(partPhases(&q), phases) || q.merged() || !e.sound(q.eq, q.zero) {
-			return out
+		guess := k
+		if n > 1 {
+			guess = lerp(out[n-2], k, (x-xs[0])/(xs[1]-xs[0]))
+		}
+		q, ok := e.follow(guess, x)
+		if !ok && n > 1 {
+			q, ok = e.follow(k, x)
+		}
+		if !ok || q.merged() {
+			return out[:sound]
 		}
 		k = q
 		out = append(out, k)
+		if n%soundEvery == soundEvery-1 || n == len(at)-1 {
+			if !e.sound(q.eq, q.zero) {
+				return out[:sound]
+			}
+			sound = len(out)
+		}
+		xs[0], xs[1] = xs[1], x
 	}
 	return out
+}
+
+// lerp is a guess at a change from two others of its line, a where t is 0 and b where
+// it is 1; compositions are those of b.
+func lerp(a, b change, t float64) change {
+	eq := *b.eq
+	eq.Parts = slices.Clone(b.eq.Parts)
+	for i := range eq.Mu {
+		if d := b.eq.Mu[i] - a.eq.Mu[i]; !math.IsNaN(d) { // both absent
+			eq.Mu[i] = a.eq.Mu[i] + t*d
+		}
+	}
+	for i := range eq.Parts {
+		eq.Parts[i].Mole = a.eq.Parts[i].Mole + t*(b.eq.Parts[i].Mole-a.eq.Parts[i].Mole)
+	}
+	return change{T: a.T + t*(b.T-a.T), above: b.above, below: b.below, eq: &eq, zero: b.zero}
 }
 
 // merged reports that two forms of a phase have become one.
@@ -184,7 +218,7 @@ func (e *engine) bend(pts []Point, a, b change, xa, xb float64, depth int) []Poi
 		return pts
 	}
 	mid := (xa + xb) / 2
-	q, ok := e.follow(a, mid)
+	q, ok := e.follow(lerp(a, b, 0.5), mid)
 	if !ok || math.Abs(q.T-(a.T+b.T)/2) < bendTol*(e.tMax-e.tMin) || (q.T-a.T)*(q.T-b.T) > 0 && math.Abs(q.T-(a.T+b.T)/2) > math.Abs(a.T-b.T)+1 {
 		return pts
 	}
@@ -215,13 +249,6 @@ func (k *change) level() bool {
 		return false
 	}
 	return svd.Values(nil)[n-1] < dependTol
-}
-
-func partPhases(k *change) (out []int) {
-	for _, p := range k.eq.Parts {
-		out = append(out, p.State.Phase)
-	}
-	return out
 }
 
 // bracketLine finds the points of one line from whole columns, for lines along
