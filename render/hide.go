@@ -29,6 +29,7 @@ func (f Figure) hidden(st Style) (Figure, Style, error) {
 	}
 	if f.hides("points") {
 		p.Nodes = slices.DeleteFunc(slices.Clone(p.Nodes), func(n liquidus.Node) bool { return n.Kind != liquidus.LoopStart })
+		p.Extrema = nil
 	}
 	f.Projection = &p
 	if f.hides("fields") {

@@ -41,7 +41,9 @@ func (b *board) mark(l *Layer, item PathItem, c Point, r float64) {
 	b.words.marks = append(b.words.marks, box{c, Point{1, 0}, r, r})
 }
 
-// shownNodes are the nodes that get a symbol: loop starts are bookkeeping.
+// shownNodes are the nodes that get a symbol: loop starts are bookkeeping. Minima of
+// solid solutions are shown with them; domes are not, for compounds have symbols of
+// their own.
 func shownNodes(p *liquidus.Projection) []liquidus.Node {
 	var out []liquidus.Node
 	for _, n := range p.Nodes {
@@ -52,6 +54,11 @@ func shownNodes(p *liquidus.Projection) []liquidus.Node {
 			n.ID = fmt.Sprint(len(out) + 1)
 		}
 		out = append(out, n)
+	}
+	for _, n := range p.Extrema {
+		if n.Kind == liquidus.Minimum {
+			out = append(out, n)
+		}
 	}
 	return out
 }

@@ -206,10 +206,15 @@ func (t triangle) cutProjection(p *liquidus.Projection) *liquidus.Projection {
 		return p
 	}
 	q := *p
-	q.Nodes, q.Curves, q.Fields, q.Isotherms, q.Unmixed = nil, nil, nil, nil, nil
+	q.Nodes, q.Extrema, q.Curves, q.Fields, q.Isotherms, q.Unmixed = nil, nil, nil, nil, nil, nil
 	for _, n := range p.Nodes {
 		if t.shows(n.Liquid) {
 			q.Nodes = append(q.Nodes, n)
+		}
+	}
+	for _, n := range p.Extrema {
+		if t.shows(n.Liquid) {
+			q.Extrema = append(q.Extrema, n)
 		}
 	}
 	for _, c := range p.Curves {

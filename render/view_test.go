@@ -187,4 +187,3 @@ func TestHide(t *testing.T) {
 		}
 	}
 }
-

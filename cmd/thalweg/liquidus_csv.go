@@ -26,6 +26,10 @@ func (r *liquidusResult) csv() ([]byte, error) {
 			row("point", n.ID, string(n.Kind), strings.Join(r.names(n.Solids), " "), n.T, n.Liquid, r.reaction(n), "")
 		}
 	}
+	for i := range p.Extrema {
+		n := &p.Extrema[i]
+		row("extremum", n.ID, string(n.Kind), strings.Join(r.names(n.Solids), " "), n.T, n.Liquid, r.reaction(n), "")
+	}
 	for i := range p.Curves {
 		c := &p.Curves[i]
 		id := p.Nodes[c.From].ID + "-" + p.Nodes[c.To].ID

@@ -11,6 +11,7 @@ type liquidusJSON struct {
 	headJSON
 	Invariants []nodeJSON           `json:"invariants"`
 	Maxima     []nodeJSON           `json:"maxima"`
+	Extrema    []nodeJSON           `json:"extrema"`     // minima and domes within fields and along edges
 	OtherNodes []nodeJSON           `json:"other_nodes"` // ends of curves that are no points of state
 	Curves     []curveJSON          `json:"curves"`
 	Fields     []fieldJSON          `json:"fields"`
@@ -101,7 +102,7 @@ func (r *liquidusResult) json() *liquidusJSON {
 	p := r.projection
 	j := &liquidusJSON{
 		headJSON:   r.headJSON(r.complete),
-		Invariants: []nodeJSON{}, Maxima: []nodeJSON{}, OtherNodes: []nodeJSON{}, Curves: []curveJSON{}, Fields: []fieldJSON{},
+		Invariants: []nodeJSON{}, Maxima: []nodeJSON{}, Extrema: []nodeJSON{}, OtherNodes: []nodeJSON{}, Curves: []curveJSON{}, Fields: []fieldJSON{},
 		Isotherms: []isothermJSON{}, Samples: []placedJSON{}, Unmixed: r.compositions(p.Unmixed),
 		Checks: newProjectionChecksJSON(&p.Checks),
 	}
@@ -115,6 +116,9 @@ func (r *liquidusResult) json() *liquidusJSON {
 		default:
 			j.OtherNodes = append(j.OtherNodes, r.nodeJSON(n))
 		}
+	}
+	for i := range p.Extrema {
+		j.Extrema = append(j.Extrema, r.nodeJSON(&p.Extrema[i]))
 	}
 	for i := range p.Curves {
 		j.Curves = append(j.Curves, r.curveJSON(&p.Curves[i]))

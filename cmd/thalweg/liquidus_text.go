@@ -125,12 +125,17 @@ func (s *subject) solutions(states []gibbs.State) string {
 
 func (r *liquidusResult) nodesText(b *strings.Builder) {
 	b.WriteString("\nInvariant points\n")
-	if !r.nodesTable(b, invariant) {
+	nodes := r.projection.Nodes
+	if !r.nodesTable(b, nodes, invariant) {
 		b.WriteString("  none\n")
 	}
 	var other strings.Builder
-	if r.nodesTable(&other, func(n *liquidus.Node) bool { return !invariant(n) && n.Kind != liquidus.LoopStart }) {
+	if r.nodesTable(&other, nodes, func(n *liquidus.Node) bool { return !invariant(n) && n.Kind != liquidus.LoopStart }) {
 		b.WriteString("\nMaxima and other ends of boundary curves\n" + other.String())
+	}
+	other.Reset()
+	if r.nodesTable(&other, r.projection.Extrema, func(*liquidus.Node) bool { return true }) {
+		b.WriteString("\nMinima and maxima within fields and along edges\n" + other.String())
 	}
 }
 
@@ -145,12 +150,12 @@ func invariant(n *liquidus.Node) bool {
 }
 
 // nodesTable lists the nodes that are wanted and reports whether there are any.
-func (r *liquidusResult) nodesTable(b *strings.Builder, wanted func(*liquidus.Node) bool) bool {
+func (r *liquidusResult) nodesTable(b *strings.Builder, nodes []liquidus.Node, wanted func(*liquidus.Node) bool) bool {
 	t := table{columns: []column{{head: "id", left: true}, {head: "kind", left: true}, {head: "edge", left: true}, {head: "T", unit: "°C"}}}
 	t.columns = append(t.columns, r.percentColumns()...)
 	t.columns = append(t.columns, column{head: "on cooling", left: true}, column{head: "solutions", unit: "mol%", left: true})
-	for i := range r.projection.Nodes {
-		n := &r.projection.Nodes[i]
+	for i := range nodes {
+		n := &nodes[i]
 		if !wanted(n) {
 			continue
 		}

@@ -1,6 +1,7 @@
 package liquidus
 
 import (
+	"fmt"
 	"math"
 
 	"thalweg/ternary"
@@ -41,6 +42,26 @@ func (e *engine) findExtrema(p *Projection) {
 				}
 			}
 		}
+	}
+	p.nameExtrema()
+}
+
+// nameExtrema numbers them: minima n1, n2, … after those among the nodes, domes
+// d1, d2, …
+func (p *Projection) nameExtrema() {
+	count := map[Kind]int{}
+	for i := range p.Nodes {
+		count[p.Nodes[i].Kind]++
+	}
+	count[Maximum] = 0
+	for i := range p.Extrema {
+		n := &p.Extrema[i]
+		count[n.Kind]++
+		prefix := "d"
+		if n.Kind == Minimum {
+			prefix = "n"
+		}
+		n.ID = fmt.Sprintf("%s%d", prefix, count[n.Kind])
 	}
 }
 
@@ -101,5 +122,5 @@ func (e *engine) addExtremum(p *Projection, k Kind, edge int, x ternary.Composit
 	}
 	y := s.all[s.primary].Y
 	st := gibbs.State{Phase: s.primary, Y: y, C: e.sys.Solids[s.primary].Contents(y)}
-	p.Extrema = append(p.Extrema, Node{Kind: k, Edge: edge, Liquid: x, T: s.T, Solids: []gibbs.State{st}, Conjugate: -1})
+	p.Extrema = append(p.Extrema, Node{Kind: k, Edge: edge, Liquid: x, T: s.T, Solids: []gibbs.State{st}, Coefficients: []float64{1}, Conjugate: -1})
 }
