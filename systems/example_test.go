@@ -47,5 +47,5 @@ func ExampleBuiltin_unknown() {
 	_, err := systems.Builtin("di-an-f0")
 	fmt.Println(err)
 	// Output:
-	// there is no built-in system "di-an-f0"; did you mean di-an-fo? Built-in are di-ab-an, di-an-fo, fo-an-silica, lif-naf-kf; a file of your own is given by its path, which ends in .toml
+	// there is no built-in system "di-an-f0"; did you mean di-an-fo? Built-in are ab-or-silica, di-ab-an, di-an-fo, fo-an-silica, lif-naf-kf; a file of your own is given by its path, which ends in .toml
 }

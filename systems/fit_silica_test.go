@@ -322,6 +322,21 @@ var silicaFits = []silicaFit{
 			{[3]string{"Fo", "En", "An"}, 1260, 5, [3]float64{23, 59, 18}},
 			{[3]string{"En", "An", "Trd"}, 1222, 5, [3]float64{18, 55, 27}},
 		}},
+	{"ab-or-silica", []coefficient{pairTerm("Ab", "Or", 0, false), pairTerm("Ab", "Or", 1, false)},
+		[]meeting{ // Schairer 1950: liquid and feldspar of one composition
+			{what: "minimum, Ab", liquid: [3]float64{65, 35, 0}, T: 1063, solid: "Afs", member: 0, y: [3]float64{65, 35}, dT: 3, dX: 2, moved: 1},
+			{what: "minimum, Or", liquid: [3]float64{65, 35, 0}, T: 1063, solid: "Afs", member: 1, y: [3]float64{65, 35}, dT: 3, dX: 2, moved: 1},
+		}, nil},
+	{"ab-or-silica", []coefficient{pairTerm("Ab", "Silica", 0, false), pairTerm("Ab", "Silica", 1, false)},
+		[]meeting{ // Schairer & Bowen 1956, from memory
+			{what: "eutectic, Ab", liquid: [3]float64{68.5, 0, 31.5}, T: 1062, solid: "Afs", member: 0, y: [3]float64{1, 0}, dT: 3, dX: 1, moved: 2},
+			{what: "eutectic, Trd", liquid: [3]float64{68.5, 0, 31.5}, T: 1062, solid: "Trd", dT: 3, dX: 1, moved: 2},
+		}, nil},
+	{"ab-or-silica", []coefficient{pairTerm("Or", "Silica", 0, false), pairTerm("Or", "Silica", 1, false)},
+		[]meeting{ // Schairer & Bowen 1955, from memory
+			{what: "eutectic, Or", liquid: [3]float64{0, 58, 42}, T: 990, solid: "Afs", member: 1, y: [3]float64{0, 1}, dT: 20, dX: 2, moved: 2},
+			{what: "eutectic, Trd", liquid: [3]float64{0, 58, 42}, T: 990, solid: "Trd", dT: 20, dX: 2, moved: 2},
+		}, nil},
 }
 
 func TestFitsWithSilica(t *testing.T) {

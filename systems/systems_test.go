@@ -24,7 +24,7 @@ func open(t *testing.T, name string) *File {
 func TestBuiltins(t *testing.T) {
 	want := map[string][3]string{
 		"di-ab-an": {"Di", "Ab", "An"}, "di-an-fo": {"Di", "An", "Fo"}, "lif-naf-kf": {"LiF", "NaF", "KF"},
-		"fo-an-silica": {"Fo", "An", "Silica"},
+		"fo-an-silica": {"Fo", "An", "Silica"}, "ab-or-silica": {"Ab", "Or", "Silica"},
 	}
 	for name, symbols := range want {
 		f := open(t, name)
