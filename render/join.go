@@ -1,6 +1,7 @@
 package render
 
 import (
+	"cmp"
 	"fmt"
 	"slices"
 	"strings"
@@ -101,9 +102,7 @@ func (f Join) draw(st Style) *joinDrawing {
 	d.levels()
 	d.melting()
 	d.marks(f.Marks)
-	for i := range d.d.Fields {
-		d.nameField(&d.d.Fields[i])
-	}
+	d.nameFields()
 	d.words.solve()
 	f.describe(d.scene, d.putWords())
 	return d
@@ -263,13 +262,26 @@ func (d *joinDrawing) tint(phases []int) (Colour, bool) {
 	return Colour{}, false
 }
 
-// nameField asks for the name of a field.
-func (d *joinDrawing) nameField(f *joins.Field) {
-	r := d.outline(f)
-	if len(r.rings) == 0 {
-		return
+// nameFields asks for the names of the fields, those with most room first: names
+// that stand outside a small field come to terms with them.
+func (d *joinDrawing) nameFields() {
+	type named struct {
+		r      region
+		name   string
+		radius float64
 	}
-	d.nameRegion(r, assemblage(d.d.System, f.Phases), func(b box) (float64, bool) { return 0, d.inFrame(b) })
+	var list []named
+	for i := range d.d.Fields {
+		f := &d.d.Fields[i]
+		if r := d.outline(f); len(r.rings) > 0 {
+			_, radius := r.pole(0.1)
+			list = append(list, named{r, assemblage(d.d.System, f.Phases), radius})
+		}
+	}
+	slices.SortStableFunc(list, func(a, b named) int { return cmp.Compare(b.radius, a.radius) })
+	for _, n := range list {
+		d.nameRegion(n.r, n.name, func(b box) (float64, bool) { return 0, d.inFrame(b) })
+	}
 }
 
 // inFrame reports that an upright box lies within the frame.
