@@ -153,8 +153,8 @@ func joinRun(e *env, o *JoinOptions) error {
 	if err != nil {
 		return fmt.Errorf("the join from %s to %s could not be computed: %w", r.from, r.to, err)
 	}
-	if s.outside(r.TMin) || s.outside(r.TMax) {
-		e.notice(o.Quiet, "the diagram reaches beyond the range for which the system file vouches, %s", s.vouched())
+	if r.linesOutside() {
+		e.notice(o.Quiet, "some of the lines lie outside the range for which the system file vouches, %s", s.vouched())
 	}
 	for i, x := range r.xs {
 		q, err := r.Diagram.Read(x, r.at[i])
@@ -165,6 +165,18 @@ func joinRun(e *env, o *JoinOptions) error {
 		return err
 	}
 	return errors.Join(e.deliver(o.Output, result), r.draw(&o.figureFlags), incomplete(r.reasons()))
+}
+
+// linesOutside reports that the system file does not vouch for all lines.
+func (r *joinResult) linesOutside() bool {
+	for i := range r.Lines {
+		for _, p := range r.Lines[i].Points {
+			if r.outside(p.T) && p.T > r.TMin && p.T < r.TMax {
+				return true
+			}
+		}
+	}
+	return false
 }
 
 // reasons says what is wrong with the diagram and the readings.

@@ -45,8 +45,8 @@ func (r *joinResult) levelsText(b *strings.Builder) {
 	if len(r.Levels) == 0 {
 		return
 	}
-	fmt.Fprintf(b, "\nReactions at one temperature, on cooling; %s is what there is of it along the join\n", r.to)
-	t := table{columns: []column{{head: "T", unit: "°C"}, {head: "kind", left: true}, r.shareColumn("from"), r.shareColumn("to"), {head: "phase", left: true}, r.shareColumn(r.to)}}
+	fmt.Fprintf(b, "\nReactions at one temperature, on cooling; places in %s of %s\n", r.basis.Unit(), r.to)
+	t := table{columns: []column{{head: "T", unit: "°C"}, {head: "kind", left: true}, r.shareColumn("from"), r.shareColumn("to"), {head: "phase", left: true}, r.shareColumn("place")}}
 	t.columns = append(append(t.columns, r.percentColumns()...), column{head: "solution", unit: "mol%", left: true})
 	for i := range r.Levels {
 		l := &r.Levels[i]

@@ -305,7 +305,7 @@ func (e *engine) nodes(d *Diagram, a, b *slab) {
 	}
 }
 
-// levels gathers the horizontals at one temperature.
+// levels gathers the horizontals at one temperature, by falling T.
 func (e *engine) levels(d *Diagram, slabs []slab) {
 	for i := range slabs {
 		s := &slabs[i]
@@ -330,4 +330,5 @@ func (e *engine) levels(d *Diagram, slabs []slab) {
 			}
 		}
 	}
+	sort.SliceStable(d.Levels, func(i, j int) bool { return d.Levels[i].T > d.Levels[j].T })
 }
