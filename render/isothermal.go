@@ -6,7 +6,6 @@ import (
 	"strings"
 
 	"thalweg/ternary"
-	"thalweg/ternary/gibbs"
 	"thalweg/ternary/section"
 )
 
@@ -172,7 +171,7 @@ func (p *panel) region(r *section.Region) {
 		return
 	}
 	for i, t := range r.TieLines {
-		pts := p.tri.all([]ternary.Composition{composition(t.A), composition(t.B)})
+		pts := p.tri.all(t.Ends[:])
 		if i == 0 || i == len(r.TieLines)-1 {
 			p.line("boundaries", pts, false, st.Polymorph, st.Line, "limiting tie line")
 			continue
@@ -202,9 +201,6 @@ func (p *panel) cutTies() {
 		}
 	}
 }
-
-// composition of a state, for the board.
-func composition(s gibbs.State) ternary.Composition { return s.Composition() }
 
 // line draws a rigid line of a layer.
 func (p *panel) line(layer string, pts []Point, closed bool, width float64, c Colour, role string) {

@@ -82,7 +82,7 @@ func (r *sectionsResult) regionJSON(g *section.Region) regionJSON {
 		j.Holes = append(j.Holes, r.ringJSON(h))
 	}
 	for _, t := range g.TieLines {
-		j.TieLines = append(j.TieLines, [2]amounts{r.composition(t.A.Composition()), r.composition(t.B.Composition())})
+		j.TieLines = append(j.TieLines, [2]amounts{r.composition(t.Ends[0]), r.composition(t.Ends[1])})
 	}
 	for _, c := range g.Corners {
 		j.Corners = append(j.Corners, phaseJSON{r.anyPhase(c.Phase), r.composition(c.Composition())})

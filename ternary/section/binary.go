@@ -115,7 +115,12 @@ func (e *engine) fillSingles(b *binary, solve func(float64) *tangent.Equilibrium
 			end = b.ties[n].lo
 		}
 		phase := noPhase
-		if end-pos > 1e-12 {
+		switch {
+		case len(b.ties) > 0 && n == 0 && end <= 1e-12: // a solution of which the edge holds one member alone
+			phase = b.ties[0].a.Phase
+		case len(b.ties) > 0 && n == len(b.ties) && end-pos <= 1e-12:
+			phase = b.ties[n-1].b.Phase
+		case end-pos > 1e-12:
 			if q := solve((pos + end) / 2); q != nil && len(q.Parts) == 1 {
 				phase = q.Parts[0].State.Phase
 			} else {

@@ -10,6 +10,7 @@
 //	find.go     the search for every three-phase triangle
 //	region.go   regions out of triangles, families and edges
 //	check.go    what every section must satisfy
+//	widen.go    solids outside the triangle: a larger triangle, and back
 //
 // A three-phase triangle is a plane that touches three phases; a two-phase region a
 // family of planes with one degree of freedom, followed by continuation in the

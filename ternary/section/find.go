@@ -28,12 +28,16 @@ func Compute(sys *gibbs.System, T float64, o Options) (*Section, error) {
 	if sys.Liquid == nil {
 		return nil, fmt.Errorf("section: the system has no liquid")
 	}
-	for _, p := range sys.Solids {
-		for _, m := range p.Members {
-			if m.C[0] < 0 || m.C[1] < 0 || m.C[2] < 0 {
-				return nil, fmt.Errorf("section: the composition of %s lies outside the triangle; sections of such systems are not computed yet", p.Symbol)
-			}
+	if p, outside := outsider(sys); outside {
+		w, ok := widen(sys, T)
+		if !ok {
+			return nil, fmt.Errorf("section: the composition of %s lies outside the triangle, and no triangle with its composition in the place of a component holds all the others", p)
 		}
+		s, err := Compute(w.sys, T, o)
+		if err != nil {
+			return nil, err
+		}
+		return w.narrow(s), nil
 	}
 	if o.TieLines <= 0 {
 		o.TieLines = 0.05

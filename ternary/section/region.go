@@ -72,6 +72,7 @@ func sortPhases(r *Region) {
 	for i := range r.TieLines {
 		if t := &r.TieLines[i]; t.A.Phase > t.B.Phase {
 			t.A, t.B = t.B, t.A
+			t.Ends[0], t.Ends[1] = t.Ends[1], t.Ends[0]
 		}
 	}
 }
@@ -79,7 +80,7 @@ func sortPhases(r *Region) {
 // spread chooses tie lines at even spacing of their middles.
 func (e *engine) spread(f *family, spacing float64) []TieLine {
 	mid := func(l *link) ternary.Composition { return composition(l.a.C).Lerp(composition(l.b.C), 0.5) }
-	out := []TieLine{{f.links[0].a, f.links[0].b}}
+	out := []TieLine{tieLine(f.links[0].a, f.links[0].b)}
 	run := 0.0
 	for i := 1; i < len(f.links); i++ {
 		p, q := &f.links[i-1], &f.links[i]
@@ -99,7 +100,11 @@ func (e *engine) spread(f *family, spacing float64) []TieLine {
 		run += math.Max(d, 0)
 	}
 	last := &f.links[len(f.links)-1]
-	return append(out, TieLine{last.a, last.b})
+	return append(out, tieLine(last.a, last.b))
+}
+
+func tieLine(a, b gibbs.State) TieLine {
+	return TieLine{A: a, B: b, Ends: [2]ternary.Composition{composition(a.C), composition(b.C)}}
 }
 
 // tieBetween solves the tie line a share of the way between two links.
@@ -107,15 +112,15 @@ func (e *engine) tieBetween(p, q *link, w float64) (TieLine, bool) {
 	var u vec
 	for i := range u {
 		if math.IsInf(p.u[i], 0) || math.IsInf(q.u[i], 0) || q.a.C == q.b.C {
-			return TieLine{p.a, p.b}, false
+			return tieLine(p.a, p.b), false
 		}
 		u[i] = p.u[i] + w*(q.u[i]-p.u[i])
 	}
 	_, _, a, b, ok := e.touchTwo(u, q.t, p.a, p.b)
 	if !ok {
-		return TieLine{p.a, p.b}, false
+		return tieLine(p.a, p.b), false
 	}
-	return TieLine{a, b}, true
+	return tieLine(a, b), true
 }
 
 // onePhase chains the rims of every solution phase into regions.

@@ -17,7 +17,8 @@ type Region struct {
 	Holes   [][]ternary.Composition
 	// TieLines of a two-phase region, at even spacing; the first and last bound it.
 	TieLines []TieLine
-	// Corners are the three phases of a three-phase region.
+	// Corners are the three phases of a three-phase region. The outline has as many
+	// points, or others where a phase lies outside the triangle.
 	Corners []gibbs.State
 
 	sideA, sideB []ternary.Composition
@@ -28,7 +29,12 @@ type Region struct {
 func (r *Region) Sides() (a, b []ternary.Composition) { return r.sideA, r.sideB }
 
 // TieLine joins two phases that coexist.
-type TieLine struct{ A, B gibbs.State }
+type TieLine struct {
+	A, B gibbs.State
+	// Ends are where the line begins, at A, and ends within the triangle: the
+	// compositions of the two phases, unless one lies outside.
+	Ends [2]ternary.Composition
+}
 
 // Section is an isothermal section.
 type Section struct {
