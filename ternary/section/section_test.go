@@ -44,7 +44,7 @@ func compute(t testing.TB, sys *gibbs.System, T float64) *section.Section {
 func TestRegionsAgainstEquilibria(t *testing.T) {
 	r := rand.New(rand.NewSource(1))
 	tested := 0
-	for _, name := range []string{"di-ab-an", "di-an-fo", "lif-naf-kf"} {
+	for _, name := range []string{"di-ab-an", "di-an-fo", "lif-naf-kf", "fo-an-silica", "ab-or-silica"} {
 		sys := builtin(t, name)
 		for k := 0; k < 8; k++ {
 			T := 730 + 1100*r.Float64()
