@@ -11,6 +11,7 @@
 //	column.go   all changes of the assemblage with T at one composition
 //	leap.go     a phase that leaps from one of its forms to another
 //	station.go  where between two columns the sequence of assemblages changes
+//	fold.go     where the two edges of a field turn into one another
 //	slab.go     the lines between two stations, followed from X to X
 //	field.go    fields out of slabs, vertical lines
 //	check.go    what every diagram must satisfy

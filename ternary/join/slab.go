@@ -337,6 +337,9 @@ func (e *engine) close(s *slab) {
 			n, T := k+1, at(k).T
 			if c.changes[k].level() {
 				T = c.changes[k].T
+			} else if n < len(s.lines) && slices.Equal(c.changes[k].above, c.changes[n].below) && math.Abs(T-at(n).T) < stitchTol {
+				T = (T + at(n).T) / 2 // the nose of a field
+				at(k).T, at(n).T = T, T
 			}
 			for ; n < len(s.lines) && at(n).T > at(n-1).T-sameEnd; n++ {
 				if c.changes[n].level() {

@@ -254,6 +254,11 @@ func (e *engine) meeting(a, b *column) (float64, bool) {
 		if x, ok := e.meet(side.c, upper, lower, side.away); ok {
 			return x, true
 		}
+		for n := max(upper, 0); n < lower; n++ {
+			if x, ok := e.fold(side.c, n, side.away); ok {
+				return x, true
+			}
+		}
 	}
 	return 0, false
 }
