@@ -7,8 +7,10 @@ import (
 	"thalweg/systems"
 	"thalweg/ternary"
 	"thalweg/ternary/descent"
+	"thalweg/ternary/gibbs"
 	joins "thalweg/ternary/join"
 	"thalweg/ternary/liquidus"
+	"thalweg/ternary/pressure"
 	"thalweg/ternary/section"
 )
 
@@ -51,6 +53,13 @@ func TestEveryFigure(t *testing.T) {
 		if err != nil {
 			t.Fatal(err)
 		}
+		var series *pressure.Series
+		if _, err := f.At(0.5e9, nil); err == nil { // the file says what pressure does
+			series, err = pressure.Compute(func(P float64) (*gibbs.System, error) { return f.At(P, nil) }, []float64{1e5, 0.3e9, 0.6e9, 1e9})
+			if err != nil {
+				t.Fatal(err)
+			}
+		}
 		window := &View{ternary.Composition{0.6, 0.2, 0.2}, ternary.Composition{0.2, 0.6, 0.2}, ternary.Composition{0.2, 0.2, 0.6}}
 		for _, ink := range []bool{false, true} {
 			st := ColourStyle()
@@ -72,6 +81,9 @@ func TestEveryFigure(t *testing.T) {
 					"phases":  Chart{Path: eq, Kind: PhaseAmounts, Style: st, WidthMM: w}.Scene,
 					"liquid":  Chart{Path: fr, Kind: LiquidChart, Against: AgainstMelt, Style: st, WidthMM: w}.Scene,
 					"heat":    Chart{Path: fr, Kind: HeatChart, Style: st, WidthMM: w}.Scene,
+				}
+				if series != nil {
+					scenes["pressure"] = PressureChart{Series: series, Style: st, WidthMM: w}.Scene
 				}
 				for kind, draw := range scenes {
 					t.Run(fmt.Sprintf("%s/%s/%g/ink=%v", name, kind, w, ink), func(t *testing.T) {

@@ -79,6 +79,7 @@ func (c *checker) melting(path string, w *wireMelting, m *Member) {
 		Cp:   c.quantity(path, w.wireCp.want(), w.wireSource),
 		V:    c.quantity(path, w.wireV.want(), w.wireSource),
 	}
+	c.underPressure(path, w, m)
 	for _, x := range m.Composition {
 		if x < 0 {
 			c.add(path, m.Symbol+" lies outside the triangle, so there is no liquid of its composition to melt to",
@@ -96,6 +97,35 @@ func (c *checker) melting(path string, w *wireMelting, m *Member) {
 	}
 	if cp := math.Abs(m.State.Cp.Value) / n; cp > maxPerAtom {
 		c.add(path+".dCp_J", fmt.Sprintf("a heat capacity change of %.3g J/(mol K) per atom is not plausible", cp), "give J/(mol K) per mole of formula unit")
+	}
+}
+
+// underPressure reads what melting does under pressure; its forms exclude each other.
+func (c *checker) underPressure(path string, w *wireMelting, m *Member) {
+	st := &m.State
+	st.VP = c.quantity(path, w.wireVP.want(), w.wireSource)
+	st.Slope = c.quantity(path, w.wireSlope.want(), w.wireSource)
+	st.CurveA = c.quantity(path, w.wireCurve.wantA(), w.wireSource)
+	if w.CurveC != nil || w.CurveA != nil { // their source keys are shared
+		st.CurveC = c.quantity(path, w.wireCurve.wantC(), w.wireSource)
+	}
+	if st.VP.Given && !st.V.Given {
+		c.add(path+".dV_change_cm3_per_GPa", "there is no change of volume that this could be a change of", "add dV_cm3")
+	}
+	if st.CurveA.Given != st.CurveC.Given {
+		c.add(path+".simon_a_GPa", "a melting curve needs both of its numbers", "give simon_a_GPa and simon_c")
+	}
+	var given []string
+	for _, q := range []struct {
+		key string
+		is  bool
+	}{{"dV_cm3", st.V.Given}, {"slope_C_per_GPa", st.Slope.Given}, {"simon_a_GPa", st.CurveA.Given}} {
+		if q.is {
+			given = append(given, q.key)
+		}
+	}
+	if len(given) > 1 {
+		c.add(path+"."+given[1], "what melting does under pressure is said twice: "+strings.Join(given, ", "), "keep one")
 	}
 }
 

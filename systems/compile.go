@@ -36,7 +36,7 @@ func (e *WithoutError) Error() string {
 // PressureError says that a file does not hold what a pressure needs.
 type PressureError struct {
 	PressureGPa, ReferenceGPa float64
-	Missing                   []string // members without dV_cm3; empty if the pressure itself is at fault
+	Missing                   []string // members without a change of volume; empty if the pressure itself is at fault
 }
 
 // Error names the pressure and the members without a change of volume.
@@ -44,7 +44,7 @@ func (e *PressureError) Error() string {
 	if len(e.Missing) == 0 {
 		return fmt.Sprintf("%g GPa is not a pressure from 0 to %g GPa", e.PressureGPa, maxPressureGPa)
 	}
-	return fmt.Sprintf("the system is given at %g GPa, and its file has no change of volume (dV_cm3) for %s, so nothing can be said at %g GPa; leave the pressure out or add dV_cm3",
+	return fmt.Sprintf("the system is given at %g GPa, and its file has no change of volume (dV_cm3) for %s, so nothing can be said at %g GPa; leave the pressure out or add dV_cm3, or for melting slope_C_per_GPa or simon_a_GPa and simon_c",
 		e.ReferenceGPa, strings.Join(e.Missing, ", "), e.PressureGPa)
 }
 
@@ -130,7 +130,7 @@ func (f *File) pressureChange(pressurePa float64) (float64, error) {
 	}
 	for _, s := range f.Solids {
 		for _, m := range s.Members {
-			if !m.State.V.Given {
+			if !m.State.Compressible() {
 				name := s.Symbol
 				if len(s.Members) > 1 || m.Symbol != s.Symbol {
 					name += "." + m.Symbol
@@ -190,7 +190,13 @@ func (c *compiler) state(m *Member) (gibbs.TFunc, error) {
 	t := st.T.Value + ternary.ZeroCelsius
 	h, v := st.H.Value*joule, st.V.Value*cubicMetre
 	if st.Kind == Melting {
-		fusion := gibbs.Fusion{T: t, H: h, Cp: st.Cp.Value, V: v}
+		fusion := gibbs.Fusion{T: t, H: h, Cp: st.Cp.Value, V: v, VP: st.VP.Value * cubicMetre / pascal}
+		if st.Slope.Given {
+			fusion.V = gibbs.Clapeyron(fusion, st.Slope.Value/pascal)
+		}
+		if st.CurveA.Given && st.CurveC.Given {
+			fusion.Curve = &gibbs.SimonGlatzel{A: st.CurveA.Value * pascal, C: st.CurveC.Value}
+		}
 		if pure(m.Composition) {
 			return gibbs.Melting(fusion, c.dP), nil
 		}

@@ -55,9 +55,13 @@
 //	[solid.reaction]    from = [{ phase = "symbol", nu = 1 }, …], dH_kJ, dS_J, dV_cm3:
 //	                    this solid minus Σ nu·phases
 //
+// Beside dV_cm3, melting may have dV_change_cm3_per_GPa; in its place slope_C_per_GPa,
+// the initial slope of the melting curve, or simon_a_GPa and simon_c, the curve
+// T = T_C·(1 + P/a)^(1/c) in kelvin (Simon & Glatzel 1929).
+//
 // ([solid.member.melting] and so on for a member.) A phase is named by its
 // symbol, by SOLID.MEMBER where that is ambiguous, or is a pure liquid component,
-// L.COMPONENT. Without dV_cm3 in every standard state the file holds for its own
+// L.COMPONENT. Without one of these in every standard state the file holds for its own
 // pressure alone. dCp_J may be left out, and is then 0.
 //
 // Every number in a standard state or mixing term has either source = "citation",

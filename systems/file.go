@@ -117,6 +117,14 @@ type State struct {
 	Kind           StateKind
 	From           []Reactant
 	T, H, S, Cp, V Quantity
+	VP             Quantity // change of V with pressure
+	Slope          Quantity // of the melting curve, in place of V
+	CurveA, CurveC Quantity // of Simon and Glatzel's melting curve, in place of both
+}
+
+// Compressible reports that the file says what a change of pressure does.
+func (s *State) Compressible() bool {
+	return s.V.Given || s.Slope.Given || s.CurveA.Given && s.CurveC.Given
 }
 
 // Reactant is a member that a standard state is counted from. Solid is an index

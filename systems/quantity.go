@@ -143,6 +143,29 @@ func (q wireV) want() wanted {
 		unitRemedy: "give cm³ per mole of formula unit"}
 }
 
+func (q wireVP) want() wanted {
+	return wanted{key: "dV_change_cm3_per_GPa", errorKey: "dV_change_uncertainty_cm3_per_GPa", stem: "dV_change", unit: "cm³/(mol GPa)", value: q.VP, err: q.VPError,
+		source: q.VPSource, recalled: q.VPRecalled, fittedTo: q.VPFittedTo, lo: -maxV, hi: maxV,
+		unitRemedy: "give cm³ per mole of formula unit and GPa"}
+}
+
+func (q wireSlope) want() wanted {
+	return wanted{key: "slope_C_per_GPa", errorKey: "slope_uncertainty_C_per_GPa", stem: "slope", unit: "°C/GPa", value: q.Slope, err: q.SlopeError,
+		source: q.SlopeSource, recalled: q.SlopeRecalled, fittedTo: q.SlopeFittedTo, lo: -2000, hi: 2000,
+		unitRemedy: "give degrees per GPa: 10 °C/kbar are 100 °C/GPa"}
+}
+
+// wantA and wantC are the two numbers of a curve, with one source.
+func (q wireCurve) wantA() wanted {
+	return wanted{key: "simon_a_GPa", errorKey: "simon_a_uncertainty_GPa", stem: "simon", unit: "GPa", value: q.CurveA, err: q.CurveAError,
+		source: q.CurveSource, recalled: q.CurveRecalled, fittedTo: q.CurveFittedTo, lo: 0, hi: 1000, strictlyPos: true, unitRemedy: "give GPa, above 0"}
+}
+
+func (q wireCurve) wantC() wanted {
+	return wanted{key: "simon_c", errorKey: "simon_c_uncertainty", stem: "simon", unit: "", value: q.CurveC, err: q.CurveCError,
+		source: q.CurveSource, recalled: q.CurveRecalled, fittedTo: q.CurveFittedTo, lo: 0, hi: 100, strictlyPos: true, unitRemedy: "give the exponent's reciprocal, above 0"}
+}
+
 // coefficients checks the a, b and c of a mixing term.
 func (r *report) coefficients(path string, c wireCoefficients, src wireSource) (a, b, t Quantity) {
 	if c.A == nil && c.B == nil && c.C == nil {

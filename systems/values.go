@@ -45,6 +45,16 @@ func (st *State) values(where string, out []Value) []Value {
 			out = append(out, Value{where, names[i], symbols[i], q})
 		}
 	}
+	for _, q := range []Value{
+		{where, "change of that with pressure", "dΔV/dP", st.VP},
+		{where, "slope of the melting curve", "dT/dP", st.Slope},
+		{where, "melting curve of Simon and Glatzel", "a", st.CurveA},
+		{where, "melting curve of Simon and Glatzel", "c", st.CurveC},
+	} {
+		if q.Given {
+			out = append(out, q)
+		}
+	}
 	return out
 }
 

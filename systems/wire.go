@@ -99,6 +99,9 @@ type wireMelting struct {
 	wireH
 	wireCp
 	wireV
+	wireVP
+	wireSlope
+	wireCurve
 	wireSource
 }
 
@@ -164,4 +167,33 @@ type wireV struct {
 	VSource   string   `toml:"dV_source"`
 	VRecalled *bool    `toml:"dV_recalled"`
 	VFittedTo string   `toml:"dV_fitted_to"`
+}
+
+// What melting does under pressure: beside dV_cm3 its change, or instead of both the
+// slope of the melting curve, or the curve itself.
+
+type wireVP struct {
+	VP         *float64 `toml:"dV_change_cm3_per_GPa"`
+	VPError    *float64 `toml:"dV_change_uncertainty_cm3_per_GPa"`
+	VPSource   string   `toml:"dV_change_source"`
+	VPRecalled *bool    `toml:"dV_change_recalled"`
+	VPFittedTo string   `toml:"dV_change_fitted_to"`
+}
+
+type wireSlope struct {
+	Slope         *float64 `toml:"slope_C_per_GPa"`
+	SlopeError    *float64 `toml:"slope_uncertainty_C_per_GPa"`
+	SlopeSource   string   `toml:"slope_source"`
+	SlopeRecalled *bool    `toml:"slope_recalled"`
+	SlopeFittedTo string   `toml:"slope_fitted_to"`
+}
+
+type wireCurve struct {
+	CurveA        *float64 `toml:"simon_a_GPa"`
+	CurveAError   *float64 `toml:"simon_a_uncertainty_GPa"`
+	CurveC        *float64 `toml:"simon_c"`
+	CurveCError   *float64 `toml:"simon_c_uncertainty"`
+	CurveSource   string   `toml:"simon_source"`
+	CurveRecalled *bool    `toml:"simon_recalled"`
+	CurveFittedTo string   `toml:"simon_fitted_to"`
 }

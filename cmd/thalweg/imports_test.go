@@ -20,8 +20,9 @@ var mayImport = map[string][]string{
 	"ternary/descent":  {"ternary", "ternary/gibbs", "ternary/tangent", "ternary/liquidus"},
 	"ternary/section":  {"ternary", "ternary/gibbs", "ternary/tangent"},
 	"ternary/join":     {"ternary", "ternary/gibbs", "ternary/tangent", "ternary/liquidus"},
+	"ternary/pressure": {"ternary", "ternary/gibbs", "ternary/liquidus"},
 	"systems":          {"ternary", "ternary/gibbs"},
-	"render":           {"ternary", "ternary/gibbs", "ternary/liquidus", "ternary/descent", "ternary/section", "ternary/join"},
+	"render":           {"ternary", "ternary/gibbs", "ternary/liquidus", "ternary/descent", "ternary/section", "ternary/join", "ternary/pressure"},
 }
 
 func TestRoomsKnowOnlyThoseBefore(t *testing.T) {

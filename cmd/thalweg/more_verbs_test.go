@@ -104,6 +104,7 @@ func TestMoreVerbsPrint(t *testing.T) {
 		{"melt", "di-an-fo", "--bulk", "Di=30,An=20,Fo=50", "--mode", "fractional"},
 		{"section", "di-an-fo", "--at", "1300", "--bulk", "Di=30,An=20,Fo=50"},
 		{"affinity", "di-an-fo", "--liquid", "Di=30,An=20,Fo=50", "--at", "1300"},
+		{"pressure", "di-an-fo", "--to", "0.5", "--count", "3"},
 	} {
 		for _, format := range formats {
 			code, out, errText := run(append(args, "--format", format, "--quiet")...)
@@ -111,5 +112,19 @@ func TestMoreVerbsPrint(t *testing.T) {
 				t.Errorf("%v --format %s: exit %d: %s", args, format, code, errText)
 			}
 		}
+	}
+}
+
+// The series of the verb agrees with single projections at the same pressures.
+func TestPressureJSON(t *testing.T) {
+	v := object(t, "pressure", "di-an-fo", "--to", "0.4", "--count", "5")
+	keys(t, v, "system pressures_GPa points changes problems provenance status")
+	if n := len(at(t, v, "pressures_GPa").([]any)); n != 5 {
+		t.Fatalf("%d pressures", n)
+	}
+	single := object(t, "liquidus", "di-an-fo", "--pressure", "0.4")
+	want := amountOf(t, single, "invariants", 0, "temperature_C")
+	if got := amountOf(t, v, "points", 0, "at", 4, "temperature_C"); math.Abs(got-want) > 1e-6 || at(t, v, "points", 0, "at", 4, "kind") != at(t, single, "invariants", 0, "kind") {
+		t.Errorf("%.8f °C in the series, %.8f alone", got, want)
 	}
 }

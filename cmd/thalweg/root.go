@@ -47,7 +47,7 @@ func NewCmdRoot(e *env) *cobra.Command {
 	})
 	cmd.SetVersionTemplate("{{.Name}} {{.Version}}\n")
 	cmd.AddCommand(NewCmdSystems(e, nil), NewCmdShow(e, nil), NewCmdLiquidus(e, nil), NewCmdDescend(e, nil), NewCmdMelt(e, nil),
-		NewCmdSection(e, nil), NewCmdJoin(e, nil), NewCmdAffinity(e, nil), NewCmdDraw(e, nil))
+		NewCmdSection(e, nil), NewCmdJoin(e, nil), NewCmdAffinity(e, nil), NewCmdPressure(e, nil), NewCmdDraw(e, nil))
 	return cmd
 }
 

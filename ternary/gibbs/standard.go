@@ -12,18 +12,45 @@ type Fusion struct {
 	T  float64 // melting point, K
 	H  float64 // heat of fusion at T, J per mole of formula unit
 	Cp float64 // change of heat capacity, J/(mol K), taken constant
-	V  float64 // change of volume, m³/mol, taken constant
+	V  float64 // change of volume at the reference pressure, m³/mol
+	VP float64 // its change with pressure, m³/(mol Pa)
+	// Curve is a measured melting curve that is met exactly at every pressure; V and
+	// VP are then without effect.
+	Curve *SimonGlatzel
+}
+
+// SimonGlatzel is a melting curve, T = T₀·(1 + P/A)^(1/C) with P above the reference
+// pressure (Simon & Glatzel 1929, Z. anorg. allg. Chem. 178, 309–316).
+type SimonGlatzel struct {
+	A float64 // Pa, positive
+	C float64 // positive
+}
+
+// Clapeyron is the change of volume, m³/mol, that belongs to an initial slope of the
+// melting curve, K/Pa: ΔV = (dT/dP)·ΔH/T.
+func Clapeyron(f Fusion, slope float64) float64 { return slope * f.H / f.T }
+
+// work is ∫ΔV dP, J/mol, over the pressure dP above the reference. Along a measured
+// melting curve it is whatever makes liquid and solid equal at T(P):
+//
+//	−{ΔH(1 − T/T₀) + ΔCp[(T − T₀) − T ln(T/T₀)]}
+func (f Fusion) work(dP float64) float64 {
+	if f.Curve == nil {
+		return f.V*dP + f.VP*dP*dP/2
+	}
+	T := f.T * math.Pow(1+dP/f.Curve.A, 1/f.Curve.C)
+	return -f.H*(1-T/f.T) - f.Cp*((T-f.T)-T*math.Log(T/f.T))
 }
 
 // Melting is the standard Gibbs energy of a solid counted from its own liquid:
 //
-//	−ΔG_fus = −{ΔH(1 − T/Tm) + ΔCp[(T − Tm) − T ln(T/Tm)] + ΔV·dP}
+//	−ΔG_fus = −{ΔH(1 − T/Tm) + ΔCp[(T − Tm) − T ln(T/Tm)] + ∫ΔV dP}
 //
 // with dP in Pa above the reference pressure. With ΔCp = 0 and an ideal liquid
 // it leads to the freezing-point law of Schröder and van Laar.
 func Melting(f Fusion, dP float64) TFunc {
 	return TFunc{
-		A: -f.H + f.Cp*f.T - f.V*dP,
+		A: -f.H + f.Cp*f.T - f.work(dP),
 		B: f.H/f.T - f.Cp*(1+math.Log(f.T)),
 		C: f.Cp,
 	}

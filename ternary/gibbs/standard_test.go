@@ -44,6 +44,52 @@ func TestMelting(t *testing.T) {
 	}
 }
 
+// meltingPoint is where a solid's standard Gibbs energy is that of its liquid, by
+// bisection.
+func meltingPoint(f Fusion, dP float64) float64 {
+	g := Melting(f, dP)
+	lo, hi := 0.3*f.T, 3*f.T
+	for k := 0; k < 80; k++ {
+		if m := (lo + hi) / 2; g.At(m) < 0 {
+			lo = m
+		} else {
+			hi = m
+		}
+	}
+	return lo
+}
+
+// Melting under pressure: the slope at the start is Clapeyron's, V falls as it is
+// told, and a melting curve of Simon and Glatzel is met at every pressure.
+func TestMeltingUnderPressure(t *testing.T) {
+	f := Fusion{T: 1664.65, H: 138100, Cp: 86}
+	const slope = 12.97e-8 // K/Pa: diopside, Yoder 1952, J. Geol. 60, 364–374 (from memory)
+	f.V = Clapeyron(f, slope)
+	const h = 1e6
+	if got := (meltingPoint(f, h) - meltingPoint(f, -h)) / (2 * h); math.Abs(got-slope) > 1e-5*slope {
+		t.Errorf("initial slope %g K/Pa, want %g", got, slope)
+	}
+	g := f
+	g.VP = -f.V / 10e9 // nothing is left of ΔV at 10 GPa: there the curve has its top
+	top := meltingPoint(g, 10e9)
+	if meltingPoint(g, 9.9e9) > top || meltingPoint(g, 10.1e9) > top || !(meltingPoint(g, 5e9) < meltingPoint(f, 5e9)) {
+		t.Error("a change of volume that falls to nothing makes no maximum of the melting curve")
+	}
+	// forsterite: an initial slope of 5.17 K/kbar (Ohtani & Kumazawa 1981, Phys. Earth
+	// Planet. Inter. 27, 32–38, derived), which a = T/(c·slope) gives to any c
+	c := 3.7
+	s := Fusion{T: 2163, H: 114000, Cp: 70, Curve: &SimonGlatzel{A: 2163 / (c * 5.17e-8), C: c}}
+	for _, P := range []float64{0, 1e5, 1e9, 5e9, 12e9} {
+		want := 2163 * math.Pow(1+P/s.Curve.A, 1/c)
+		if got := meltingPoint(s, P); math.Abs(got-want) > 1e-9 {
+			t.Errorf("%g GPa: melts at %.10f K, the curve says %.10f", P/1e9, got, want)
+		}
+	}
+	if got := (meltingPoint(s, h) - 2163) / h; math.Abs(got-5.17e-8) > 1e-3*5.17e-8 {
+		t.Errorf("initial slope %g K/Pa", got)
+	}
+}
+
 // A compound's congruent melting point is met exactly whatever the liquid is.
 func TestCompoundMelting(t *testing.T) {
 	liquid := NewLiquid(ternary.Components{}, Mixing{

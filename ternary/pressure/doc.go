@@ -1,0 +1,13 @@
+// Package pressure follows the liquidus projection of a system from pressure to
+// pressure.
+//
+// In: what builds the system at a pressure, and a list of pressures. Out: a [Series]:
+// the invariant points at each, and the [Change]s between them, located: where a solid
+// gains or loses its primary field, where a point appears or vanishes, and where it
+// becomes one of another kind, such as a eutectic that turns into a reaction point.
+//
+//	series.go  projections at all pressures, points matched from one to the next
+//	change.go  the pressures at which something changes, by bisection
+//
+// Every projection is that of package liquidus, with its checks.
+package pressure
