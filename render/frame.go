@@ -133,7 +133,7 @@ func (b *board) ticks(l *Layer, s scale) {
 		if math.Abs(s.tick.Y) > 1e-9 {
 			c.X += sign(s.tick.X) * t.w / 8
 		}
-		if c.X-t.w/2 < outerMargin {
+		if c.X-t.w/2 < outerMargin || c.X+t.w/2 > b.scene.Width-outerMargin {
 			continue // no room between a window's corner and the edge of the page
 		}
 		b.words.fixed("tick label", number+" "+symbol, t, t.baseline(c, 0), 0, st.Muted)

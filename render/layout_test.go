@@ -224,7 +224,12 @@ func TestEveryFieldWithRoomIsNamed(t *testing.T) {
 		}
 		want := map[string]int{}
 		for i, f := range d.pr.Fields {
-			if 2*d.poles[i] >= 3 {
+			if 2*d.poles[i] < 3 {
+				continue
+			}
+			if f.TwoLiquids {
+				want["two liquids"]++
+			} else {
 				want[d.pr.System.Solids[f.Solid].Name]++
 			}
 		}
