@@ -104,6 +104,12 @@ func Solve(sys *gibbs.System, b ternary.Composition, T float64) (*Equilibrium, e
 			}
 		}
 		if worst < 1e-13 {
+			// within rounding of an event: a phase that the programme holds without any
+			// amount may be one that Newton's plane gives a trace of, or the reverse
+			if r, err2 := Refine(sys, b, T, s.mu, s.held()); err2 == nil && r.Margin <= cutTol {
+				r.Rounds = s.rounds
+				return r, nil
+			}
 			if err == nil {
 				err = fmt.Errorf("a phase lies %.1e RT above the plane", q.Margin)
 			}

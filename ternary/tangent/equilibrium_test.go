@@ -143,6 +143,22 @@ func TestOutsideSolid(t *testing.T) {
 	}
 }
 
+// twin is the part of a renamed system's answer that has the phase and the contents
+// of a: two forms of one phase may stand in either order.
+func twin(a tangent.Part, parts []tangent.Part, perm [3]int) (best tangent.Part) {
+	near := math.Inf(1)
+	for _, c := range parts {
+		d := 0.0
+		for i, k := range perm {
+			d += math.Abs(c.State.C[i] - a.State.C[k])
+		}
+		if c.State.Phase == a.State.Phase && d < near {
+			best, near = c, d
+		}
+	}
+	return best
+}
+
 // Renaming the components renames the answer and changes nothing else.
 func TestPermutingComponents(t *testing.T) {
 	perm := [3]int{2, 0, 1}
@@ -163,10 +179,11 @@ func TestPermutingComponents(t *testing.T) {
 				continue
 			}
 			for k := range p.Parts {
-				a, c := p.Parts[k], q.Parts[k]
+				a := p.Parts[k]
+				c := twin(a, q.Parts, perm)
 				// near a boundary an amount answers to rounding 1/σ times enlarged
 				tol := 1e-9 / smallestSingular(p)
-				if a.State.Phase != c.State.Phase || math.Abs(a.Mole-c.Mole) > tol {
+				if a.State.Phase != c.State.Phase || c.State.C == [3]float64{} || math.Abs(a.Mole-c.Mole) > tol {
 					t.Errorf("%s, %v, %.2f K: %+v and %+v", s.name, b, T, a, c)
 				}
 			}

@@ -158,8 +158,20 @@ func (s *simplex) price() bool {
 }
 
 // parts are the phases of the basis, points of one phase that belong to one
-// maximum of its driving force taken together.
+// maximum of its driving force taken together, those with an amount.
 func (s *simplex) parts() []Part {
+	out := s.held()
+	kept := out[:0]
+	for _, p := range out {
+		if p.Mole > 0 {
+			kept = append(kept, p)
+		}
+	}
+	return kept
+}
+
+// held is parts with those that have no amount.
+func (s *simplex) held() []Part {
 	out := make([]Part, 0, 3)
 	for k := 0; k < s.n; k++ {
 		st := s.basis[k].state
@@ -172,7 +184,7 @@ func (s *simplex) parts() []Part {
 				merged = true
 			}
 		}
-		if !merged && s.amount[k] > 0 {
+		if !merged {
 			out = append(out, Part{State: gibbs.State{Phase: st.Phase, Y: d.Y, C: d.C}, Mole: s.amount[k]})
 		}
 	}
