@@ -61,7 +61,6 @@ func (k *keyMaker) explain() {
 		}
 	}
 	k.isotherms()
-	k.diamonds()
 	k.solids()
 }
 
@@ -108,37 +107,56 @@ func (k *keyMaker) nodes() {
 		head.entries[i].colour = k.style.Muted
 	}
 	k.table.add(head)
-	grouped := len(nodes) > manyNodes
-	beside := k.fitsBeside(nodes, cols[2]+keyGap, !grouped)
-	last := ""
+	many := len(nodes) > manyNodes
+	beside := k.fitsBeside(nodes, cols[2]+keyGap, !many)
 	for i, n := range nodes {
 		gap := 0.0
 		switch {
 		case i == 0:
 			gap = 0.9
-		case !beside || !grouped && rankNode(n)/10 != rankNode(nodes[i-1])/10:
+		case !beside || rankNode(n)/10 != rankNode(nodes[i-1])/10:
 			gap = 0.5
 		}
-		if kind := k.kind(n); grouped && kind != last {
-			e := k.text(kind, keyIndent, Italic)
-			e.colour = k.style.Muted
-			k.table.add(tableLine{gap: gap + 0.4, entries: []entry{e}})
-			last, gap = kind, 0
-		}
-		k.node(n, cols, k.describe(n, !grouped), beside, gap)
+		k.node(n, cols, k.describe(n, !many), beside, gap)
+	}
+	if many {
+		k.kinds(nodes)
 	}
 }
 
-// manyNodes is the number of points from which their kinds stand as headings
+// manyNodes is the number of points from which their kinds are told by their letters
 // instead of in every line.
 const manyNodes = 8
 
-// kind is the heading for points like n.
-func (k *keyMaker) kind(n liquidus.Node) string {
-	if n.Edge >= 0 {
-		return string(n.Kind) + " on an edge"
+// kinds explains the letters of points: capitals inside the triangle, small ones on
+// its edges.
+func (k *keyMaker) kinds(nodes []liquidus.Node) {
+	var order []liquidus.Kind
+	letters := map[liquidus.Kind][]string{}
+	for _, n := range nodes {
+		letter := strings.TrimRight(n.ID, "0123456789")
+		if letter == "" || n.Kind == "" {
+			continue
+		}
+		if letters[n.Kind] == nil {
+			order = append(order, n.Kind)
+		}
+		if !slices.Contains(letters[n.Kind], letter) {
+			letters[n.Kind] = append(letters[n.Kind], letter)
+		}
 	}
-	return string(n.Kind)
+	var words [][]Run
+	for i, kind := range order {
+		for _, l := range letters[kind] {
+			words = append(words, PlainRuns(l, k.style.Base, Bold))
+		}
+		text := string(kind)
+		if i < len(order)-1 {
+			text += ";"
+		}
+		words = append(words, k.words(text)...)
+	}
+	k.paragraph(words, 0, keyBlock/4)
 }
 
 // rankNode sorts points: those inside, those on edges, extrema; of each, by
@@ -278,26 +296,42 @@ func process(p *descent.Path) string {
 	return s
 }
 
-// events lists T, event and the melt left for each event of a path.
+// events lists T, event and the melt left for each event of a path; events at one
+// temperature share an entry.
 func (k *keyMaker) events(p *descent.Path) {
 	right := min(k.width, 60)
-	for _, s := range p.Steps {
+	for i := 0; i < len(p.Steps); i++ {
+		s := p.Steps[i]
 		if s.Event == "" {
 			continue
 		}
-		label := fmt.Sprintf("%.0f %% melt", math.Abs(100*melt(s, k.fig.Basis)))
-		e := k.text(s.Event, keyT+keyGap-1, Regular)
+		words, share := strings.TrimSuffix(s.Event, " begins"), percentOf(s, k.fig.Basis)
+		for i+1 < len(p.Steps) && p.Steps[i+1].Event != "" && math.Abs(p.Steps[i+1].T-s.T) < 0.05 {
+			i++
+			words += ", " + strings.TrimSuffix(p.Steps[i].Event, " begins")
+			if last := percentOf(p.Steps[i], k.fig.Basis); last != share {
+				share, _, _ = strings.Cut(share, "–")
+				share += "–" + last
+			}
+		}
+		label := share + " % melt"
+		e := k.text(words, keyT+keyGap-1, Regular)
 		room := right - e.x - TextWidth(PlainRuns(label, k.style.Base, Regular)) - 2
-		lines := wrap(k.words(s.Event), room)
-		for i, runs := range lines {
+		lines := wrap(k.words(words), room)
+		for n, runs := range lines {
 			e.runs = runs
 			l := tableLine{entries: []entry{e}}
-			if i == 0 {
+			if n == 0 {
 				l.entries = append(l.entries, k.number(fmt.Sprintf("%.0f", celsius(s.T)), keyT), k.number(label, right))
 			}
 			k.table.add(l)
 		}
 	}
+}
+
+// percentOf is the melt of a step in whole percent.
+func percentOf(s descent.Step, b ternary.Basis) string {
+	return fmt.Sprintf("%.0f", math.Abs(100*melt(s, b)))
 }
 
 // pathLines explains the lines of paths, with samples drawn in the colour of
@@ -357,13 +391,40 @@ func (k *keyMaker) pathLines(i int) {
 	})
 }
 
-// isotherms states their interval.
+// isotherms states their interval, and explains the symbol for the composition of a
+// solid.
 func (k *keyMaker) isotherms() {
 	step := isothermStep(k.pr.Isotherms)
-	if step == 0 {
+	words := ""
+	if step != 0 {
+		words = fmt.Sprintf("isotherms every %g °C", step)
+	}
+	if len(compoundPlaces(k.pr.System)) == 0 {
+		if words != "" {
+			k.paragraph(k.words(words), 0, keyBlock)
+		}
 		return
 	}
-	k.paragraph(k.words(fmt.Sprintf("isotherms every %g °C", step)), 0, keyBlock)
+	st := k.style
+	x := 0.0
+	l := tableLine{gap: keyBlock}
+	const what = "composition of a solid"
+	if words != "" {
+		x = TextWidth(PlainRuns(words, st.Base, Regular)) + 3
+		if x+3+TextWidth(PlainRuns(what, st.Base, Regular)) > k.width {
+			k.paragraph(k.words(words), 0, keyBlock)
+			x, l.gap = 0, 0
+		} else {
+			l.entries = append(l.entries, k.text(words, 0, Regular))
+		}
+	}
+	l.entries = append(l.entries, k.text(what, x+3, Regular))
+	l.symbol = func(l *Layer, o Point) {
+		w := white
+		q := Point{o.X + x + diamondRadius + 0.2, o.Y + XHeight(st.Base)/2}
+		l.Path(PathItem{Path: diamond(q, diamondRadius), Fill: &w, Stroke: st.stroke(st.Mark, st.Line), Role: "key symbol"})
+	}
+	k.table.add(l)
 }
 
 // shade gives the scale of the shading.
@@ -376,23 +437,18 @@ func (k *keyMaker) shade() {
 	st := k.style
 	low, high := fmt.Sprintf("%.0f", celsius(sh.low)), fmt.Sprintf("%.0f °C", celsius(sh.high))
 	x := TextWidth(PlainRuns(low, st.Base, Regular)) + 1.5
-	k.paragraph(k.words("fields shaded by the liquidus temperature:"), 0, keyBlock/2)
-	k.table.add(tableLine{entries: []entry{k.text(low, 0, Regular), k.text(high, x+bar+1.5, Regular)}, symbol: func(l *Layer, o Point) {
-		sh.swatch(l, Point{o.X + x, o.Y - 0.2}, bar, CapHeight(st.Base)+0.4, st.stroke(st.Tick, st.Line))
-	}})
-}
-
-// diamonds explains the symbol for the composition of a solid.
-func (k *keyMaker) diamonds() {
-	if len(compoundPlaces(k.pr.System)) == 0 {
-		return
+	l := tableLine{entries: []entry{k.text(low, 0, Regular), k.text(high, x+bar+1.5, Regular)}}
+	after := x + bar + 1.5 + TextWidth(PlainRuns(high, st.Base, Regular)) + 2.5
+	if what := "liquidus temperature"; after+TextWidth(PlainRuns(what, st.Base, Regular)) <= k.width {
+		l.gap = keyBlock / 2
+		l.entries = append(l.entries, k.text(what, after, Regular))
+	} else {
+		k.paragraph(k.words(what+":"), 0, keyBlock/4)
 	}
-	st := k.style
-	k.table.add(tableLine{entries: []entry{k.text("composition of a solid", 3, Regular)}, symbol: func(l *Layer, o Point) {
-		w := white
-		q := Point{o.X + diamondRadius + 0.2, o.Y + XHeight(st.Base)/2}
-		l.Path(PathItem{Path: diamond(q, diamondRadius), Fill: &w, Stroke: st.stroke(st.Mark, st.Line), Role: "key symbol"})
-	}})
+	l.symbol = func(l *Layer, o Point) {
+		sh.swatch(l, Point{o.X + x, o.Y - 0.2}, bar, CapHeight(st.Base)+0.4, st.stroke(st.Tick, st.Line))
+	}
+	k.table.add(l)
 }
 
 // solids spells out the symbols of the solids that appear, and what is to be
@@ -429,7 +485,13 @@ func (k *keyMaker) solids() {
 		last[len(last)-1].Text = strings.TrimSuffix(last[len(last)-1].Text, ";")
 		k.paragraph(words, 0, keyBlock/2)
 	}
+	if len(remarks) > manyRemarks { // one after another, to save lines
+		remarks = []string{strings.Join(remarks, "; ")}
+	}
 	for _, r := range remarks {
 		k.paragraph(k.words(r), 0, keyBlock/2)
 	}
 }
+
+// manyRemarks is the number of remarks on solids from which they share a paragraph.
+const manyRemarks = 3

@@ -328,8 +328,8 @@ func TestArrowheadsPointDownhill(t *testing.T) {
 					}
 				}
 			}
-			if best > 2*arrowLength {
-				continue // a path's head, away from any curve
+			if best > 1 {
+				continue // a path's head, beside a curve or across it
 			}
 			n++
 			if fall <= 0 {
