@@ -328,7 +328,7 @@ func TestArrowheadsPointDownhill(t *testing.T) {
 					}
 				}
 			}
-			if best > 1 {
+			if best > arrowLength {
 				continue // a path's head, beside a curve or across it
 			}
 			n++

@@ -60,9 +60,62 @@ func (e *engine) scanEdge(k int) *binary {
 		}
 		last, lastAt = q, s
 	}
-	sort.Slice(b.ties, func(i, j int) bool { return b.ties[i].lo < b.ties[j].lo })
+	for round := 0; round < 10; round++ {
+		sort.Slice(b.ties, func(i, j int) bool { return b.ties[i].lo < b.ties[j].lo })
+		if !e.missedTie(b, solve) {
+			break
+		}
+	}
 	e.fillSingles(b, solve)
 	return b
+}
+
+// missedTie looks for a tie line beside one that is known, where the mesh has no
+// point: the two ends of a one-phase stretch are of the same phase, so that where they
+// differ there is one between them. It reports whether it found one.
+func (e *engine) missedTie(b *binary, solve func(float64) *tangent.Equilibrium) bool {
+	ends := func(s float64) (int, bool) { // the phase at an apex
+		q := solve(s)
+		if q == nil || len(q.Parts) != 1 {
+			return 0, false
+		}
+		return q.Parts[0].State.Phase, true
+	}
+	for n := 0; n <= len(b.ties); n++ {
+		lo, hi := 0.0, 1.0
+		var left, right int
+		ok1, ok2 := true, true
+		if n == 0 {
+			left, ok1 = ends(0)
+		} else {
+			lo, left = b.ties[n-1].hi, b.ties[n-1].b.Phase
+		}
+		if n == len(b.ties) {
+			right, ok2 = ends(1)
+		} else {
+			hi, right = b.ties[n].lo, b.ties[n].a.Phase
+		}
+		if !ok1 || !ok2 || left == right || !(hi-lo > 1e-12) {
+			continue
+		}
+		for range 60 {
+			q := solve((lo + hi) / 2)
+			if q == nil {
+				break
+			}
+			if len(q.Parts) == 2 {
+				known := len(b.ties)
+				e.noteTie(b, q)
+				return len(b.ties) > known
+			}
+			if q.Parts[0].State.Phase == left {
+				lo = (lo + hi) / 2
+			} else {
+				hi = (lo + hi) / 2
+			}
+		}
+	}
+	return false
 }
 
 // noteTie files the tie line of an equilibrium on the edge.

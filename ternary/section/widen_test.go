@@ -53,3 +53,13 @@ func TestOutsideSolid(t *testing.T) {
 		t.Errorf("only %d compositions compared, %d with the solid outside", compared, outside)
 	}
 }
+
+// Between the monotectic of forsterite and silica and the melting point of
+// cristobalite a sliver of liquid lies beside pure silica, narrower than the mesh of
+// an edge: the tie lines on both sides of it are found.
+func TestNarrowLiquid(t *testing.T) {
+	sys := builtin(t, "fo-an-silica")
+	for _, celsius := range []float64{1693.5, 1694, 1696, 1700, 1705, 1712, 1713, 1720} {
+		compute(t, sys, celsius+ternary.ZeroCelsius)
+	}
+}
