@@ -128,7 +128,12 @@ func (e *engine) followFromEdge(ed *edge, node int, at float64) {
 		}
 		head := e.edgePoint(nd, s.z, dir)
 		head.a, head.b = sa, sb
-		e.finishCurve(node, []tracePoint{head}, newTracer(e, a, b).run(s.place(), dir, false))
+		run := newTracer(e, a, b).run(s.place(), dir, false)
+		points := []tracePoint{head}
+		if x, found := newTracer(e, a, b).extremum(&head, &run.points[0], a, b); found {
+			points = append(points, x) // T turns before the first step is done
+		}
+		e.finishCurve(node, points, run)
 		return
 	}
 	e.problem(fmt.Sprintf("the curve of %s and %s could not be followed from the edge at %s", e.symbol(sa.Phase), e.symbol(sb.Phase), e.place(nd.Liquid)))

@@ -56,7 +56,7 @@ func binary(sys *gibbs.System, k int, top, bottom float64) (at []float64) {
 // of them.
 func TestEdgesAgainstOwnSolver(t *testing.T) {
 	found := 0
-	for _, s := range subjects(t) {
+	for _, s := range oneLiquid(t) {
 		p := whole(t, s.sys, liquidus.Options{})
 		low, high := surface(t, s.sys).Limits()
 		for k := 0; k < 3; k++ {

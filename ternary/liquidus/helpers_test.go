@@ -41,6 +41,21 @@ func subjects(t testing.TB) []subject {
 	return out
 }
 
+// oneLiquid are the subjects without two liquids, for tests whose own reckoning knows
+// of one; those with two have tests of their own.
+func oneLiquid(t testing.TB) (out []subject) {
+	for _, s := range subjects(t) {
+		split := false
+		for _, f := range whole(t, s.sys, liquidus.Options{}).Fields {
+			split = split || f.TwoLiquids
+		}
+		if !split {
+			out = append(out, s)
+		}
+	}
+	return out
+}
+
 func builtin(t testing.TB, name string) *gibbs.System {
 	t.Helper()
 	f, err := systems.Builtin(name)

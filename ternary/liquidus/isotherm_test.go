@@ -78,7 +78,7 @@ func TestIsothermPoints(t *testing.T) {
 // ends on a boundary curve come in pairs, one from either field.
 func TestIsothermEnds(t *testing.T) {
 	closed := 0
-	for _, s := range subjects(t) {
+	for _, s := range oneLiquid(t) {
 		base := whole(t, s.sys, liquidus.Options{})
 		p := whole(t, s.sys, liquidus.Options{Isotherms: spread(base, 12)})
 		surf := surface(t, s.sys)
@@ -121,7 +121,7 @@ func TestIsothermEnds(t *testing.T) {
 // lie on either side of T, the crossing between them is on a line.
 func TestIsothermsComplete(t *testing.T) {
 	const near = 6e-4 // chords against the curve: half of h = 0.07, turning by half of θ = 0.25, strays by hθ/32
-	for _, s := range subjects(t) {
+	for _, s := range oneLiquid(t) {
 		t.Run(s.name, func(t *testing.T) {
 			t.Parallel()
 			base := whole(t, s.sys, liquidus.Options{})

@@ -44,7 +44,7 @@ const (
 // reference's potentials and driving forces, and the stable assemblage just above
 // and just below.
 func TestLiquidusByOtherRoads(t *testing.T) {
-	for n, s := range subjects(t) {
+	for n, s := range oneLiquid(t) {
 		t.Run(s.name, func(t *testing.T) {
 			t.Parallel()
 			surf := surface(t, s.sys)
@@ -97,7 +97,7 @@ const drivenTol = 1e-8
 // above it, the liquid does not unmix.
 func TestNodesFromScratch(t *testing.T) {
 	nodes := 0
-	for _, s := range subjects(t) {
+	for _, s := range oneLiquid(t) {
 		p := whole(t, s.sys, liquidus.Options{})
 		for _, n := range p.Nodes {
 			if n.Kind == liquidus.AtApex {

@@ -174,6 +174,9 @@ func (t *tracer) run(from place, dir vec, closable bool) traced {
 	for steps := 0; steps < stepsMax && h >= stepMin; steps++ {
 		if f, k := exitDistance(p.x, p.t); f <= h {
 			if q, ok := t.land(&p, f, k); ok {
+				if x, found := t.extremum(&p, &q, a, b); found {
+					out.points = append(out.points, x)
+				}
 				out.points = append(out.points, q)
 				out.end, out.edge = endEdge, k
 				return out
