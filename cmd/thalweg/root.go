@@ -8,8 +8,9 @@ import (
 )
 
 // introduction is what the bare command prints.
-const introduction = `thalweg computes what a melt of three components does on cooling: the liquidus
-projection of the system, and the line of descent of a composition in it.
+const introduction = `thalweg computes what a melt of three components does on cooling and heating: the
+liquidus projection of the system, sections through it, and the line of descent of a
+composition in it; and draws them for print.
 
 Three examples, ready to run:
 

@@ -44,6 +44,7 @@ func TestFiguresAreMadeAgain(t *testing.T) {
 		t.Fatal(err)
 	}
 	writeFile(t, "own.toml", string(f.Raw()))
+	writeFile(t, "the plan.toml", "system = \"di-ab-an\"\nsamples = \"rows of samples.csv\"\n[[panel]]\nkind = \"projection\"\n[[panel]]\nkind = \"section\"\nat_C = 1250\n")
 	for i, args := range [][]string{
 		{"liquidus", "--samples", "rows of samples.csv", "--isotherms", "1200,1250,", "--ink"},
 		{"liquidus", "own.toml", "--without", "An", "--basis", "mol", "--shade", "temperature"},
