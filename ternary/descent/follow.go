@@ -33,6 +33,11 @@ type Removal struct {
 	Fraction float64 // of what there is of each, 0 to 1; 0 means 1
 }
 
+// deepest is how far down a path is followed, as a share of the lowest temperature, K,
+// for which the system file vouches: a liquid from which a solid is withheld may stay
+// liquid to temperatures at which no model means anything.
+const deepest = 0.5
+
 // defaultSteps is Options.Steps where it is 0.
 const defaultSteps = 50
 
@@ -116,6 +121,7 @@ func begin(sys *gibbs.System, bulk ternary.Composition, mode Mode, steps int) (*
 		return nil, primary, errors.New("no solid ever saturates in this liquid, so it does not freeze")
 	}
 	low, high := surf.Limits()
+	low = math.Max(low, deepest*sys.Range[0])
 	if math.IsInf(T, 1) {
 		return nil, primary, fmt.Errorf("this composition is not all liquid at any temperature up to %.0f °C: %s, whose composition lies outside the triangle, is always saturated",
 			high-ternary.ZeroCelsius, sys.Solids[primary.Phase].Symbol)
