@@ -109,9 +109,24 @@ func counted(t *testing.T, s *Scene, st Style) {
 	report(t, touching(s))
 	report(t, beyondPage(s))
 	report(t, tooSmall(s, st.MinLine, st.MinText))
+	report(t, covering(s))
 	if len(texts(s)) < 4 || s.Title == "" || s.Description == "" {
 		t.Errorf("the page holds %d words, title %q, description %q", len(texts(s)), s.Title, s.Description)
 	}
+}
+
+// covering lists the words of a scene that lie on a marker or an arrowhead.
+func covering(s *Scene) (out []string) {
+	marks := paths(s, "marker", "arrowhead")
+	for _, x := range texts(s) {
+		ink := inkBox(x)
+		for _, m := range marks {
+			if covered(ink, m.Path) {
+				out = append(out, fmt.Sprintf("%s %q covers a %s", x.Role, x.label(), m.Role))
+			}
+		}
+	}
+	return out
 }
 
 // A plate holds what its panels hold, in its grid, and passes the same counts.
