@@ -41,16 +41,10 @@ A solid that is stable is not withheld by this: the liquid may be metastable.`,
 		Example: `  thalweg affinity di-an-fo --liquid Di=50,An=35,Fo=15 --at 1250
   thalweg affinity lif-naf-kf --liquid LiF=50,NaF=10,KF=40 --at 450 --basis mol --format json`,
 		Args: atMostOneSystem,
-		RunE: func(cmd *cobra.Command, args []string) error {
+		RunE: verb(e, o, nil, nil, func(cmd *cobra.Command, args []string) error {
 			o.fill(cmd, args)
-			if err := o.check(); err != nil {
-				return err
-			}
-			if runF != nil {
-				return runF(o)
-			}
-			return affinityRun(e, o)
-		},
+			return o.check()
+		}, runF, affinityRun),
 	}
 	o.resultFlags.add(cmd)
 	o.systemFlags.add(cmd)
@@ -77,10 +71,8 @@ func (o *AffinityOptions) check() error {
 		return &usageError{Where: "--at " + o.At, What: "one temperature is wanted", Remedy: "run the command once for each"}
 	}
 	o.temperature = list[0] + ternary.ZeroCelsius
-	for _, check := range []func() error{o.resultFlags.check, o.systemFlags.check} {
-		if err := check(); err != nil {
-			return err
-		}
+	if err := firstError(o.resultFlags.check, o.systemFlags.check); err != nil {
+		return err
 	}
 	return checkTargets(o.Output, nil, o.System)
 }
@@ -192,13 +184,7 @@ func (r *affinityResult) order() []solidForce {
 }
 
 func (r *affinityResult) encode(format string) ([]byte, error) {
-	switch format {
-	case "json":
-		return toJSON(r.json())
-	case "csv":
-		return r.csv()
-	}
-	return []byte(r.text()), nil
+	return encode(format, func() any { return r.json() }, r.csv, r.text)
 }
 
 func (r *affinityResult) text() string {

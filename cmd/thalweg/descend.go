@@ -52,17 +52,10 @@ the events and every tenth of the crystallisation; JSON and CSV hold all steps.`
   thalweg descend lif-naf-kf --bulk LiF=30,NaF=30,KF=40 --basis mol --format csv --output salt.csv
   thalweg descend di-ab-an --samples samples.csv --format json --output paths.json`,
 		Args: atMostOneSystem,
-		RunE: func(cmd *cobra.Command, args []string) error {
+		RunE: verb(e, o, &o.figureFlags, &o.Quiet, func(cmd *cobra.Command, args []string) error {
 			o.fill(cmd, args)
-			if err := o.check(cmd); err != nil {
-				return err
-			}
-			e.idleFigureFlags(cmd, &o.figureFlags, o.Quiet)
-			if runF != nil {
-				return runF(o)
-			}
-			return descendRun(e, o)
-		},
+			return o.check(cmd)
+		}, runF, descendRun),
 	}
 	o.resultFlags.add(cmd)
 	o.systemFlags.add(cmd)
@@ -95,10 +88,8 @@ func (o *DescendOptions) check(cmd *cobra.Command) (err error) {
 	if o.removals, err = parseRemovals(o.Remove); err != nil {
 		return err
 	}
-	for _, check := range []func() error{o.resultFlags.check, o.systemFlags.check, o.figureFlags.check} {
-		if err := check(); err != nil {
-			return err
-		}
+	if err := firstError(o.resultFlags.check, o.systemFlags.check, o.figureFlags.check); err != nil {
+		return err
 	}
 	return checkTargets(o.Output, o.Figures, o.System, o.Samples)
 }
@@ -221,13 +212,7 @@ func (e *env) noticePaths(r *pathsResult, quiet bool) {
 }
 
 func (r *pathsResult) encode(format string) ([]byte, error) {
-	switch format {
-	case "json":
-		return toJSON(r.json())
-	case "csv":
-		return r.csv()
-	}
-	return []byte(r.text()), nil
+	return encode(format, func() any { return r.json() }, r.csv, r.text)
 }
 
 // draw lays the paths over the projection. more says why the projection is not

@@ -110,3 +110,41 @@ func canonical(path string) string {
 	}
 	return path
 }
+
+// firstError runs checks in order and returns the first error.
+func firstError(checks ...func() error) error {
+	for _, check := range checks {
+		if err := check(); err != nil {
+			return err
+		}
+	}
+	return nil
+}
+
+// encode writes a result in the format asked for.
+func encode(format string, json func() any, csv func() ([]byte, error), text func() string) ([]byte, error) {
+	switch format {
+	case "json":
+		return toJSON(json())
+	case "csv":
+		return csv()
+	}
+	return []byte(text()), nil
+}
+
+// verb is the RunE of a command: it completes and checks the options, says which flags
+// do nothing, and runs; runF, if any, takes the place of run.
+func verb[O any](e *env, o *O, fig *figureFlags, quiet *bool, prepare func(*cobra.Command, []string) error, runF func(*O) error, run func(*env, *O) error) func(*cobra.Command, []string) error {
+	return func(cmd *cobra.Command, args []string) error {
+		if err := prepare(cmd, args); err != nil {
+			return err
+		}
+		if fig != nil {
+			e.idleFigureFlags(cmd, fig, *quiet)
+		}
+		if runF != nil {
+			return runF(o)
+		}
+		return run(e, o)
+	}
+}

@@ -53,17 +53,10 @@ SYSTEM is a built-in name or the path of a .toml file; without it, ` + defaultSy
   thalweg join di-ab-an --from Ab=100 --to An=100 --read An=50@1400 --figure loop.pdf
   thalweg join di-an-fo --from Di=50,An=50 --to Fo=100 --range 1150,1900 --format json`,
 		Args: atMostOneSystem,
-		RunE: func(cmd *cobra.Command, args []string) error {
+		RunE: verb(e, o, &o.figureFlags, &o.Quiet, func(cmd *cobra.Command, args []string) error {
 			o.fill(cmd, args)
-			if err := o.check(); err != nil {
-				return err
-			}
-			e.idleFigureFlags(cmd, &o.figureFlags, o.Quiet)
-			if runF != nil {
-				return runF(o)
-			}
-			return joinRun(e, o)
-		},
+			return o.check()
+		}, runF, joinRun),
 	}
 	o.resultFlags.add(cmd)
 	o.systemFlags.add(cmd)
@@ -107,10 +100,8 @@ func (o *JoinOptions) check() error {
 		}
 		o.points = append(o.points, p)
 	}
-	for _, check := range []func() error{o.resultFlags.check, o.systemFlags.check, o.figureFlags.check} {
-		if err := check(); err != nil {
-			return err
-		}
+	if err := firstError(o.resultFlags.check, o.systemFlags.check, o.figureFlags.check); err != nil {
+		return err
 	}
 	return checkTargets(o.Output, o.Figures, o.System)
 }
@@ -220,11 +211,5 @@ func (r *joinResult) draw(f *figureFlags) error {
 }
 
 func (r *joinResult) encode(format string) ([]byte, error) {
-	switch format {
-	case "json":
-		return toJSON(r.json())
-	case "csv":
-		return r.csv()
-	}
-	return []byte(r.text()), nil
+	return encode(format, func() any { return r.json() }, r.csv, r.text)
 }

@@ -45,17 +45,10 @@ to the range of temperature for which the system file vouches. The result of
   thalweg liquidus di-an-fo --without An --figure metastable.svg
   thalweg liquidus di-ab-an --samples samples.csv --figure samples.pdf --figure samples.png`,
 		Args: atMostOneSystem,
-		RunE: func(cmd *cobra.Command, args []string) error {
+		RunE: verb(e, o, &o.figureFlags, &o.Quiet, func(cmd *cobra.Command, args []string) error {
 			o.fill(cmd, args)
-			if err := o.check(); err != nil {
-				return err
-			}
-			e.idleFigureFlags(cmd, &o.figureFlags, o.Quiet)
-			if runF != nil {
-				return runF(o)
-			}
-			return liquidusRun(e, o)
-		},
+			return o.check()
+		}, runF, liquidusRun),
 	}
 	o.resultFlags.add(cmd)
 	o.systemFlags.add(cmd)
@@ -71,10 +64,8 @@ func (o *LiquidusOptions) check() (err error) {
 	if o.isotherms, err = parseIsotherms(o.Isotherms); err != nil {
 		return err
 	}
-	for _, check := range []func() error{o.resultFlags.check, o.systemFlags.check, o.figureFlags.check} {
-		if err := check(); err != nil {
-			return err
-		}
+	if err := firstError(o.resultFlags.check, o.systemFlags.check, o.figureFlags.check); err != nil {
+		return err
 	}
 	return checkTargets(o.Output, o.Figures, o.System, o.Samples)
 }
@@ -130,13 +121,7 @@ func liquidusRun(e *env, o *LiquidusOptions) error {
 }
 
 func (r *liquidusResult) encode(format string) ([]byte, error) {
-	switch format {
-	case "json":
-		return toJSON(r.json())
-	case "csv":
-		return r.csv()
-	}
-	return []byte(r.text()), nil
+	return encode(format, func() any { return r.json() }, r.csv, r.text)
 }
 
 // place finds the liquidus of each sample.

@@ -42,17 +42,10 @@ The solids are those that are stable below the solidus.`,
   thalweg melt lif-naf-kf --bulk LiF=30,NaF=30,KF=40 --mode fractional --basis mol
   thalweg melt di-ab-an --bulk Di=30,Ab=35,An=35 --mode fractional --figure melts.pdf --format csv`,
 		Args: atMostOneSystem,
-		RunE: func(cmd *cobra.Command, args []string) error {
+		RunE: verb(e, o, &o.figureFlags, &o.Quiet, func(cmd *cobra.Command, args []string) error {
 			o.fill(cmd, args)
-			if err := o.check(cmd); err != nil {
-				return err
-			}
-			e.idleFigureFlags(cmd, &o.figureFlags, o.Quiet)
-			if runF != nil {
-				return runF(o)
-			}
-			return meltRun(e, o)
-		},
+			return o.check(cmd)
+		}, runF, meltRun),
 	}
 	o.resultFlags.add(cmd)
 	o.systemFlags.add(cmd)
@@ -70,10 +63,8 @@ func (o *MeltOptions) check(cmd *cobra.Command) error {
 	if _, ok := meltModes[o.Mode]; !ok {
 		return &usageError{Where: "--mode", What: fmt.Sprintf("%q is unknown", o.Mode), Remedy: "write batch or fractional"}
 	}
-	for _, check := range []func() error{o.resultFlags.check, o.systemFlags.check, o.figureFlags.check} {
-		if err := check(); err != nil {
-			return err
-		}
+	if err := firstError(o.resultFlags.check, o.systemFlags.check, o.figureFlags.check); err != nil {
+		return err
 	}
 	return checkTargets(o.Output, o.Figures, o.System, o.Samples)
 }

@@ -45,17 +45,10 @@ were measured the result is an extrapolation.`,
 		Example: `  thalweg pressure di-an-fo --to 1
   thalweg pressure di-ab-an --from 0.0001 --to 0.5 --count 11 --figure pressure.pdf --style single-84`,
 		Args: atMostOneSystem,
-		RunE: func(cmd *cobra.Command, args []string) error {
+		RunE: verb(e, o, &o.figureFlags, &o.Quiet, func(cmd *cobra.Command, args []string) error {
 			o.fill(cmd, args)
-			if err := o.check(cmd); err != nil {
-				return err
-			}
-			e.idleFigureFlags(cmd, &o.figureFlags, o.Quiet)
-			if runF != nil {
-				return runF(o)
-			}
-			return pressureRun(e, o)
-		},
+			return o.check(cmd)
+		}, runF, pressureRun),
 	}
 	o.resultFlags.add(cmd)
 	o.systemFlags.add(cmd)
@@ -82,10 +75,8 @@ func (o *PressureOptions) check(cmd *cobra.Command) error {
 	case o.Count < fewPressures || o.Count > mostPressures:
 		return &usageError{Where: "--count", What: fmt.Sprintf("%d pressures cannot be had", o.Count), Remedy: fmt.Sprintf("give %d to %d", fewPressures, mostPressures)}
 	}
-	for _, check := range []func() error{o.resultFlags.check, o.systemFlags.check, o.figureFlags.check} {
-		if err := check(); err != nil {
-			return err
-		}
+	if err := firstError(o.resultFlags.check, o.systemFlags.check, o.figureFlags.check); err != nil {
+		return err
 	}
 	return checkTargets(o.Output, o.Figures, o.System)
 }
@@ -138,13 +129,7 @@ func (r *pressureResult) draw(f *figureFlags) error {
 }
 
 func (r *pressureResult) encode(format string) ([]byte, error) {
-	switch format {
-	case "json":
-		return toJSON(r.json())
-	case "csv":
-		return r.csv()
-	}
-	return []byte(r.text()), nil
+	return encode(format, func() any { return r.json() }, r.csv, r.text)
 }
 
 // pointName is the phases of a point, and its edge if it lies on one.

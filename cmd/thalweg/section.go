@@ -45,17 +45,10 @@ SYSTEM is a built-in name or the path of a .toml file; without it, ` + defaultSy
   thalweg section di-ab-an --at 1300,1200,1150 --figure sections.pdf
   thalweg section di-ab-an --at 1250 --bulk Di=30,Ab=35,An=35 --format json`,
 		Args: atMostOneSystem,
-		RunE: func(cmd *cobra.Command, args []string) error {
+		RunE: verb(e, o, &o.figureFlags, &o.Quiet, func(cmd *cobra.Command, args []string) error {
 			o.fill(cmd, args)
-			if err := o.check(cmd); err != nil {
-				return err
-			}
-			e.idleFigureFlags(cmd, &o.figureFlags, o.Quiet)
-			if runF != nil {
-				return runF(o)
-			}
-			return sectionRun(e, o)
-		},
+			return o.check(cmd)
+		}, runF, sectionRun),
 	}
 	o.resultFlags.add(cmd)
 	o.systemFlags.add(cmd)
@@ -81,10 +74,8 @@ func (o *SectionOptions) check(cmd *cobra.Command) (err error) {
 			return err
 		}
 	}
-	for _, check := range []func() error{o.resultFlags.check, o.systemFlags.check, o.figureFlags.check} {
-		if err := check(); err != nil {
-			return err
-		}
+	if err := firstError(o.resultFlags.check, o.systemFlags.check, o.figureFlags.check); err != nil {
+		return err
 	}
 	return checkTargets(o.Output, o.Figures, o.System, o.Samples)
 }
@@ -181,11 +172,5 @@ func (r *sectionsResult) draw(f *figureFlags) error {
 }
 
 func (r *sectionsResult) encode(format string) ([]byte, error) {
-	switch format {
-	case "json":
-		return toJSON(r.json())
-	case "csv":
-		return r.csv()
-	}
-	return []byte(r.text()), nil
+	return encode(format, func() any { return r.json() }, r.csv, r.text)
 }
