@@ -93,8 +93,9 @@ func place(page, part *Scene, x, y float64) {
 // panel draws one section on a page of its own.
 type panel struct {
 	*board
-	s    *section.Section
-	ties []arc
+	s       *section.Section
+	ties    []arc
+	handles map[[2]Point][2]Point // of the curves between points of phase boundaries
 }
 
 func (f Isothermal) panel(s *section.Section, width float64, letter string) *Scene {
@@ -105,6 +106,7 @@ func (f Isothermal) panel(s *section.Section, width float64, letter string) *Sce
 	tri.origin = Point{sideMargin, outerMargin + foot.below}
 	height := tri.origin.Y + tri.height() + foot.above
 	p := &panel{board: newBoard(st, tri, width, height, isothermalLayers...), s: s}
+	p.bend()
 	p.heading(letter)
 	p.frame()
 	for i := range s.Regions {
@@ -142,6 +144,48 @@ func (p *panel) heading(letter string) {
 	}
 }
 
+// bend finds the curves through the computed points of every phase boundary, so
+// that the regions on its two sides share them.
+func (p *panel) bend() {
+	p.handles = map[[2]Point][2]Point{}
+	for i := range p.s.Regions {
+		r := &p.s.Regions[i]
+		if len(r.Phases) != 2 {
+			continue
+		}
+		a, b := r.Sides()
+		for _, side := range [][]ternary.Composition{a, b} {
+			for _, c := range p.side(side).segs {
+				p.handles[[2]Point{c[0], c[3]}] = [2]Point{c[1], c[2]}
+				p.handles[[2]Point{c[3], c[0]}] = [2]Point{c[2], c[1]}
+			}
+		}
+	}
+}
+
+// side is the curve of one side of a region of two phases.
+func (p *panel) side(xs []ternary.Composition) arc {
+	return smooth(p.tri.all(xs), false, p.tri.rim())
+}
+
+// bent is the path of an outline, curved where it is a phase boundary.
+func (p *panel) bent(ring []Point) Path {
+	var out Path
+	for i, a := range ring {
+		if i == 0 {
+			out.MoveTo(a.X, a.Y)
+		}
+		b := ring[(i+1)%len(ring)]
+		if h, ok := p.handles[[2]Point{a, b}]; ok {
+			out.CubeTo(h[0].X, h[0].Y, h[1].X, h[1].Y, b.X, b.Y)
+		} else {
+			out.LineTo(b.X, b.Y)
+		}
+	}
+	out.Close()
+	return out
+}
+
 // ring puts an outline on the page, anticlockwise or not.
 func (p *panel) ring(xs []ternary.Composition, anticlockwise bool) []Point {
 	pts := distinct(p.tri.all(xs), true)
@@ -156,16 +200,16 @@ func (p *panel) region(r *section.Region) {
 	st := p.style
 	outline := p.ring(r.Outline, true)
 	if len(outline) > 2 {
-		path := Polyline(outline, true)
+		path := p.bent(outline)
 		for _, h := range r.Holes {
-			path.Append(Polyline(p.ring(h, false), true))
+			path.Append(p.bent(p.ring(h, false)))
 		}
 		if c, ok := p.tint(r); ok {
 			p.scene.Layer("regions").Path(PathItem{Path: path, Fill: &c, Role: "region"})
 		}
 	}
 	if len(r.Phases) == 3 {
-		p.line("boundaries", outline, true, st.Polymorph, st.Line, "three-phase triangle")
+		p.line("boundaries", straight(append(outline, outline[0])), true, st.Polymorph, "three-phase triangle")
 	}
 	if len(r.Phases) != 2 {
 		return
@@ -173,7 +217,7 @@ func (p *panel) region(r *section.Region) {
 	for i, t := range r.TieLines {
 		pts := p.tri.all(t.Ends[:])
 		if i == 0 || i == len(r.TieLines)-1 {
-			p.line("boundaries", pts, false, st.Polymorph, st.Line, "limiting tie line")
+			p.line("boundaries", straight(pts), false, st.Polymorph, "limiting tie line")
 			continue
 		}
 		if pts[0].distance(pts[1]) > 0.3 {
@@ -183,7 +227,7 @@ func (p *panel) region(r *section.Region) {
 	}
 	a, b := r.Sides()
 	for _, side := range [][]ternary.Composition{a, b} {
-		p.line("boundaries", distinct(p.tri.all(side), false), false, st.Boundary, st.Line, "phase boundary")
+		p.line("boundaries", p.side(side), false, st.Boundary, "phase boundary")
 	}
 }
 
@@ -202,16 +246,17 @@ func (p *panel) cutTies() {
 	}
 }
 
-// line draws a rigid line of a layer.
-func (p *panel) line(layer string, pts []Point, closed bool, width float64, c Colour, role string) {
-	if len(pts) < 2 {
+// line draws a rigid line of a layer, closed to a ring if asked.
+func (p *panel) line(layer string, line arc, closed bool, width float64, role string) {
+	if line.empty() {
 		return
 	}
-	p.scene.Layer(layer).Path(PathItem{Path: Polyline(pts, closed), Stroke: p.style.stroke(width, c), Role: role})
+	path := line.path()
 	if closed {
-		pts = append(slices.Clone(pts), pts[0])
+		path.Close()
 	}
-	p.words.lines.add(rigid, straight(pts).chords(2.5)...)
+	p.scene.Layer(layer).Path(PathItem{Path: path, Stroke: p.style.stroke(width, p.style.Line), Role: role})
+	p.words.lines.add(rigid, line.chords(2.5)...)
 }
 
 // tint is white for two phases, a pale tint for one, a fuller one for three.
