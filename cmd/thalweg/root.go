@@ -1,10 +1,13 @@
 package main
 
 import (
+	"errors"
 	"fmt"
+	"strconv"
 	"strings"
 
 	"github.com/spf13/cobra"
+	"github.com/spf13/pflag"
 )
 
 // introduction is what the bare command prints.
@@ -43,13 +46,38 @@ func NewCmdRoot(e *env) *cobra.Command {
 		},
 		CompletionOptions: cobra.CompletionOptions{HiddenDefaultCmd: false},
 	}
-	cmd.SetFlagErrorFunc(func(c *cobra.Command, err error) error {
-		return &usageError{What: err.Error(), Remedy: seeHelp(c), Err: err}
-	})
+	cmd.SetFlagErrorFunc(flagError)
 	cmd.SetVersionTemplate("{{.Name}} {{.Version}}\n")
 	cmd.AddCommand(NewCmdSystems(e, nil), NewCmdShow(e, nil), NewCmdLiquidus(e, nil), NewCmdDescend(e, nil), NewCmdMelt(e, nil),
 		NewCmdSection(e, nil), NewCmdJoin(e, nil), NewCmdAffinity(e, nil), NewCmdPressure(e, nil), NewCmdDraw(e, nil))
 	return cmd
+}
+
+// flagError says in plain words what is wrong with a flag.
+func flagError(c *cobra.Command, err error) error {
+	out := &usageError{What: err.Error(), Remedy: seeHelp(c), Err: err}
+	var value *pflag.InvalidValueError
+	if !errors.As(err, &value) {
+		return out
+	}
+	f := value.GetFlag()
+	why, remedy := "", ""
+	switch f.Value.Type() {
+	case "float64":
+		why, remedy = "not a number", "write it without a unit and with a decimal point; "
+	case "int":
+		why, remedy = "not a whole number", "write digits alone; "
+	case "bool":
+		why = "neither true nor false"
+	default:
+		return out
+	}
+	if errors.Is(err, strconv.ErrRange) {
+		why, remedy = "out of range", ""
+	}
+	out.What = fmt.Sprintf("--%s %s: %q is %s", f.Name, value.GetValue(), value.GetValue(), why)
+	out.Remedy = remedy + out.Remedy
+	return out
 }
 
 // knownVerb refuses arguments of the bare command: they are verbs that do not
