@@ -205,6 +205,16 @@ func (e *engine) code(s *surface) int {
 // surface evaluates all saturation temperatures at x. all is used as scratch
 // (allocated when nil) and holds hints on entry.
 func (e *engine) surface(x ternary.Composition, all []saturated) surface {
+	s := e.saturations(x, all)
+	var q gibbs.Drive
+	if q, s.split = e.splits(x, s.T); s.split {
+		s.other = q.Y
+	}
+	return s
+}
+
+// saturations is surface without the question whether the liquid separates.
+func (e *engine) saturations(x ternary.Composition, all []saturated) surface {
 	if all == nil {
 		all = make([]saturated, len(e.sys.Solids))
 	}
@@ -215,10 +225,6 @@ func (e *engine) surface(x ternary.Composition, all []saturated) surface {
 		if all[i].T > s.T {
 			s.T, s.primary = all[i].T, i
 		}
-	}
-	var q gibbs.Drive
-	if q, s.split = e.splits(x, s.T); s.split {
-		s.other = q.Y
 	}
 	return s
 }

@@ -25,9 +25,10 @@ func NewSurface(sys *gibbs.System) (*Surface, error) {
 
 // Liquidus returns T_L(x) in kelvin and the primary solid. T is −Inf when no
 // solid ever saturates, +Inf when the liquid is oversaturated at every
-// temperature up to Limit: the composition then cannot be all liquid.
+// temperature up to Limit: the composition then cannot be all liquid. Whether the
+// liquid has separated into two by then is not asked.
 func (s *Surface) Liquidus(x ternary.Composition) (T float64, primary gibbs.State) {
-	at := s.e.surface(x, s.hints)
+	at := s.e.saturations(x, s.hints)
 	if at.primary < 0 {
 		return math.Inf(-1), gibbs.State{Phase: gibbs.Liquid}
 	}

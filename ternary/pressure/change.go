@@ -2,8 +2,6 @@ package pressure
 
 import (
 	"fmt"
-	"slices"
-	"sort"
 
 	"thalweg/ternary/liquidus"
 )
@@ -30,111 +28,108 @@ type Change struct {
 	Node     liquidus.Node // the point beside the change; zero for a field
 }
 
-// locateTol is the pressure, Pa, to which a change is located.
+// locateTol is the pressure, Pa, to which a change is located: 1e-4 GPa, far less
+// than what the volumes are worth.
 const locateTol = 1e5
 
-// signature is what is compared from pressure to pressure: sorted names of fields and
-// of points with their kinds.
-type signature map[string]item
-
-type item struct {
-	solid int
-	node  *liquidus.Node
-}
-
-func signatureOf(p *liquidus.Projection) signature {
-	s := signature{}
-	for i := range p.Fields {
-		f := &p.Fields[i]
-		s[fmt.Sprintf("field %d", f.Solid)] = item{solid: f.Solid}
-	}
-	count := map[string]int{}
-	for i := range p.Nodes {
-		n := &p.Nodes[i]
-		if followed(n) {
-			count[keyOf(n)]++
-			s[fmt.Sprintf("point %s #%d", keyOf(n), count[keyOf(n)])] = item{solid: -1, node: n}
+// differences are the changes from one projection to another, their pressure left
+// open: fields in the order of the solids, then points in the order of the nodes.
+func differences(a, b *liquidus.Projection) (out []Change) {
+	fa, fb := hasField(a), hasField(b)
+	for i := range fa {
+		switch {
+		case fb[i] && !fa[i]:
+			out = append(out, Change{Kind: FieldGained, Solid: i, Edge: -1})
+		case fa[i] && !fb[i]:
+			out = append(out, Change{Kind: FieldLost, Solid: i, Edge: -1})
 		}
 	}
-	return s
-}
-
-// differences of two signatures, in a fixed order.
-func differences(a, b signature) (out []string) {
-	for k, v := range a {
-		w, ok := b[k]
-		if !ok || v.node != nil && v.node.Kind != w.node.Kind {
-			out = append(out, k)
+	below, above := points(a), points(b)
+	partner := pairs(below, above)
+	gained := make([]bool, len(above))
+	for i := range gained {
+		gained[i] = true
+	}
+	for i, n := range below {
+		if k := partner[i]; k < 0 {
+			out = append(out, pointChange(PointLost, n))
+		} else {
+			gained[k] = false
+			if m := above[k]; m.Kind != n.Kind {
+				c := pointChange(KindChanged, m)
+				c.From, c.To = n.Kind, m.Kind
+				out = append(out, c)
+			}
 		}
 	}
-	for k := range b {
-		if _, ok := a[k]; !ok {
-			out = append(out, k)
+	for i, n := range above {
+		if gained[i] {
+			out = append(out, pointChange(PointGained, n))
 		}
 	}
-	sort.Strings(out)
 	return out
+}
+
+func pointChange(kind ChangeKind, n *liquidus.Node) Change {
+	return Change{Kind: kind, Solid: -1, Solids: solids(n), Edge: n.Edge, Node: *n}
+}
+
+// hasField tells for every solid whether it has a primary field.
+func hasField(p *liquidus.Projection) []bool {
+	out := make([]bool, len(p.System.Solids))
+	for i := range p.Fields {
+		out[p.Fields[i].Solid] = true
+	}
+	return out
+}
+
+// search locates the changes between two pressures.
+type search struct {
+	build   Build
+	changes []Change
+	failed  int    // projections on the way that did not pass their checks
+	first   string // what the first of them said
 }
 
 // locate finds every change between neighbouring pressures by bisection.
 func (s *Series) locate(build Build) error {
 	for i := 1; i < len(s.Projections); i++ {
-		if err := s.between(build, s.Pressures[i-1], s.Pressures[i], s.Projections[i-1], s.Projections[i]); err != nil {
+		lo, hi := s.Pressures[i-1], s.Pressures[i]
+		q := search{build: build}
+		if err := q.between(lo, hi, s.Projections[i-1], s.Projections[i]); err != nil {
 			return err
+		}
+		s.Changes = append(s.Changes, q.changes...)
+		if q.failed > 0 {
+			s.Problems = append(s.Problems, fmt.Sprintf("%g to %g GPa: %d of the projections by which changes were located did not pass their checks, the first at %s",
+				lo/1e9, hi/1e9, q.failed, q.first))
 		}
 	}
 	return nil
 }
 
-func (s *Series) between(build Build, lo, hi float64, a, b *liquidus.Projection) error {
-	sa, sb := signatureOf(a), signatureOf(b)
-	diff := differences(sa, sb)
-	if len(diff) == 0 {
-		return nil
-	}
-	if hi-lo <= locateTol {
-		for _, k := range diff {
-			s.Changes = append(s.Changes, change(k, sa, sb, (lo+hi)/2))
+func (q *search) between(lo, hi float64, a, b *liquidus.Projection) error {
+	diff := differences(a, b)
+	mid := (lo + hi) / 2
+	if len(diff) == 0 || hi-lo <= locateTol {
+		for _, c := range diff {
+			c.Pressure = mid
+			q.changes = append(q.changes, c)
 		}
 		return nil
 	}
-	mid := (lo + hi) / 2
-	m, err := project(build, mid)
+	m, err := project(q.build, mid)
 	if err != nil {
 		return err
 	}
-	if err := s.between(build, lo, mid, a, m); err != nil {
+	if p := m.Checks.Problems; len(p) > 0 {
+		if q.failed == 0 {
+			q.first = problem(mid, p[0])
+		}
+		q.failed++
+	}
+	if err := q.between(lo, mid, a, m); err != nil {
 		return err
 	}
-	return s.between(build, mid, hi, m, b)
-}
-
-func change(key string, a, b signature, P float64) Change {
-	v, below := a[key]
-	w, above := b[key]
-	c := Change{Pressure: P, Solid: -1, Edge: -1}
-	point := func(n *liquidus.Node) {
-		c.Solids, c.Edge, c.Node = solids(n), n.Edge, *n
-	}
-	switch {
-	case below && above:
-		c.Kind, c.From, c.To = KindChanged, v.node.Kind, w.node.Kind
-		point(w.node)
-	case above && w.node != nil:
-		c.Kind = PointGained
-		point(w.node)
-	case below && v.node != nil:
-		c.Kind = PointLost
-		point(v.node)
-	case above:
-		c.Kind, c.Solid = FieldGained, w.solid
-	default:
-		c.Kind, c.Solid = FieldLost, v.solid
-	}
-	return c
-}
-
-// Same reports that a change concerns the point of a track.
-func (c *Change) Same(t *Track) bool {
-	return c.Solid < 0 && c.Edge == t.Edge && slices.Equal(c.Solids, t.Solids)
+	return q.between(mid, hi, m, b)
 }

@@ -9,5 +9,7 @@
 //	series.go  projections at all pressures, points matched from one to the next
 //	change.go  the pressures at which something changes, by bisection
 //
-// Every projection is that of package liquidus, with its checks.
+// What comes and goes again between two neighbouring pressures is not seen, so the list
+// must be as fine as what is looked for. Every projection is that of package liquidus,
+// with its checks.
 package pressure

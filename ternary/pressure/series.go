@@ -1,10 +1,10 @@
 package pressure
 
 import (
+	"cmp"
 	"errors"
 	"fmt"
-	"math"
-	"sort"
+	"slices"
 
 	"thalweg/ternary/gibbs"
 	"thalweg/ternary/liquidus"
@@ -19,17 +19,17 @@ type Series struct {
 	Projections []*liquidus.Projection
 	Points      []Track
 	Changes     []Change
-	// Problems says which projections did not pass their own checks: what is said of
-	// the points and changes beside them is not sure.
+	// Problems says which projections did not pass their own checks, those computed to
+	// locate a change among them: what is said of the points and changes beside them is
+	// not sure.
 	Problems []string
 }
 
 // Track is one invariant point from pressure to pressure: of the same solids, in the
 // triangle or on the same edge.
 type Track struct {
-	Key    string // of its solids and edge; the same for points that are matched
-	Solids []int  // indices in System.Solids, gibbs.Liquid for a second liquid
-	Edge   int    // component that is absent, or −1
+	Solids []int // indices in System.Solids, gibbs.Liquid for a second liquid
+	Edge   int   // component that is absent, or −1
 	At     []Sight
 }
 
@@ -42,7 +42,9 @@ type Sight struct {
 // most bounds a series.
 const most = 500
 
-// Compute follows the points over the pressures, Pa, which must rise.
+// Compute follows the points over the pressures, Pa, which must rise. An error says
+// that they do not, or that a system cannot be built; projections that fail their
+// checks are no error but are named in Problems.
 func Compute(build Build, pressures []float64) (*Series, error) {
 	switch {
 	case len(pressures) == 0:
@@ -63,7 +65,7 @@ func Compute(build Build, pressures []float64) (*Series, error) {
 		}
 		s.Projections = append(s.Projections, p)
 		for _, q := range p.Checks.Problems {
-			s.Problems = append(s.Problems, fmt.Sprintf("%g GPa: %s", P/1e9, q))
+			s.Problems = append(s.Problems, problem(P, q))
 		}
 	}
 	s.match()
@@ -72,6 +74,9 @@ func Compute(build Build, pressures []float64) (*Series, error) {
 	}
 	return s, nil
 }
+
+// problem says at which pressure a projection did not pass its checks.
+func problem(pascal float64, text string) string { return fmt.Sprintf("%g GPa: %s", pascal/1e9, text) }
 
 func project(build Build, P float64) (*liquidus.Projection, error) {
 	sys, err := build(P)
@@ -94,55 +99,86 @@ func followed(n *liquidus.Node) bool {
 	return true
 }
 
-// keyOf names a point by its edge and solids, whatever their order.
-func keyOf(n *liquidus.Node) string {
-	list := solids(n)
-	return fmt.Sprint(n.Edge, list)
+// points are the invariant points of a projection.
+func points(p *liquidus.Projection) (out []*liquidus.Node) {
+	for i := range p.Nodes {
+		if n := &p.Nodes[i]; followed(n) {
+			out = append(out, n)
+		}
+	}
+	return out
 }
 
+// solids are the phases beside the liquid, sorted.
 func solids(n *liquidus.Node) []int {
 	var out []int
 	for _, s := range n.Solids {
 		out = append(out, s.Phase)
 	}
-	sort.Ints(out)
+	slices.Sort(out)
 	return out
 }
 
-// match sorts the points of all projections into tracks: those of one key, the nearest
-// in composition where there are several.
-func (s *Series) match() {
-	for i, p := range s.Projections {
-		taken := map[int]bool{}
-		for k := range p.Nodes {
-			n := &p.Nodes[k]
-			if !followed(n) {
-				continue
+// pairs matches the points of two projections and returns, for each of a, the index of
+// its partner in b, or −1. Partners have the same solids and edge; where several
+// have, those nearest in composition are matched first.
+func pairs(a, b []*liquidus.Node) []int {
+	type pair struct {
+		a, b int
+		d    float64
+	}
+	var all []pair
+	for i, n := range a {
+		for k, m := range b {
+			if n.Edge == m.Edge && slices.Equal(solids(n), solids(m)) {
+				all = append(all, pair{i, k, n.Liquid.Distance(m.Liquid)})
 			}
-			key, best, near := keyOf(n), -1, math.Inf(1)
-			for t := range s.Points {
-				tr := &s.Points[t]
-				last := &tr.At[len(tr.At)-1]
-				if tr.Key != key || taken[t] || last.Index != i-1 {
-					continue
-				}
-				if d := last.Node.Liquid.Distance(n.Liquid); d < near {
-					best, near = t, d
-				}
-			}
-			if best < 0 {
-				s.Points = append(s.Points, Track{Key: key, Solids: solids(n), Edge: n.Edge})
-				best = len(s.Points) - 1
-			}
-			taken[best] = true
-			s.Points[best].At = append(s.Points[best].At, Sight{i, *n})
 		}
 	}
-	sort.SliceStable(s.Points, func(a, b int) bool {
-		x, y := &s.Points[a], &s.Points[b]
-		if (x.Edge < 0) != (y.Edge < 0) {
-			return x.Edge < 0
+	slices.SortStableFunc(all, func(x, y pair) int { return cmp.Compare(x.d, y.d) })
+	partner := make([]int, len(a))
+	for i := range partner {
+		partner[i] = -1
+	}
+	taken := make([]bool, len(b))
+	for _, p := range all {
+		if partner[p.a] < 0 && !taken[p.b] {
+			partner[p.a], taken[p.b] = p.b, true
 		}
-		return x.At[0].Index < y.At[0].Index
+	}
+	return partner
+}
+
+// match sorts the points of all projections into tracks, those inside the triangle
+// first, then in the order in which they appear.
+func (s *Series) match() {
+	var before []*liquidus.Node
+	var onTrack []int // of each of them
+	for i, p := range s.Projections {
+		now := points(p)
+		track := make([]int, len(now))
+		for k := range track {
+			track[k] = -1
+		}
+		for j, k := range pairs(before, now) {
+			if k >= 0 {
+				track[k] = onTrack[j]
+			}
+		}
+		for k, n := range now {
+			if track[k] < 0 {
+				track[k] = len(s.Points)
+				s.Points = append(s.Points, Track{Solids: solids(n), Edge: n.Edge})
+			}
+			t := &s.Points[track[k]]
+			t.At = append(t.At, Sight{i, *n})
+		}
+		before, onTrack = now, track
+	}
+	slices.SortStableFunc(s.Points, func(a, b Track) int {
+		if (a.Edge < 0) != (b.Edge < 0) {
+			return cmp.Compare(a.Edge, b.Edge)
+		}
+		return cmp.Compare(a.At[0].Index, b.At[0].Index)
 	})
 }
