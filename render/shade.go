@@ -17,8 +17,8 @@ const shadeCells = 96
 // with i/shadeCells of component 0, from component 1 to component 2, in the basis
 // of the figure.
 type shading struct {
-	tri  triangle
 	t    []float64 // K; −Inf where there is none
+	p    []Point   // on the page
 	low  float64
 	high float64
 	ramp []Colour // hottest first
@@ -67,17 +67,21 @@ func newShading(f Figure, st Style, tri triangle) (*shading, error) {
 // node is the place of a node in t.
 func node(i, j int) int { return i*(shadeCells+1) - i*(i-1)/2 + j }
 
-// at is a node on the page, given row and column.
-func (s *shading) at(i, j int) Point {
-	a, b := s.tri.corner(0), s.tri.corner(1)
-	c := s.tri.corner(2)
-	u, w := float64(i)/shadeCells, float64(j)/shadeCells
-	return a.times(u).plus(b.times(1 - u - w)).plus(c.times(w))
+// put finds the nodes' places on the page.
+func (s *shading) put(tri triangle) {
+	a, b, c := tri.corner(0), tri.corner(1), tri.corner(2)
+	s.p = s.p[:0]
+	for i := 0; i <= shadeCells; i++ {
+		for j := 0; j <= shadeCells-i; j++ {
+			u, w := float64(i)/shadeCells, float64(j)/shadeCells
+			s.p = append(s.p, a.times(u).plus(b.times(1-u-w)).plus(c.times(w)))
+		}
+	}
 }
 
 // draw fills, one over the other, the areas that are hotter than each step.
 func (s *shading) draw(l *Layer, tri triangle) {
-	s.tri = tri
+	s.put(tri)
 	n := len(s.ramp)
 	for k := range n {
 		c := s.ramp[n-1-k]
@@ -142,7 +146,7 @@ func (s *shading) above(level float64) Path {
 
 // cells calls f for every cell of the closed net.
 func (s *shading) cells(f func([3]knot)) {
-	k := func(i, j int) knot { n := node(i, j); return knot{n, s.t[n], s.at(i, j)} }
+	k := func(i, j int) knot { n := node(i, j); return knot{n, s.t[n], s.p[n]} }
 	beyond := knot{id: outer, t: math.Inf(-1)}
 	for i := range shadeCells {
 		for j := range shadeCells - i {

@@ -22,7 +22,8 @@ func signedArea(p Path) float64 {
 // height h of a triangle lies (1−h)² of it.
 func TestShadedAreas(t *testing.T) {
 	tri := triangle{side: 100}
-	s := &shading{tri: tri}
+	s := &shading{}
+	s.put(tri)
 	for i := 0; i <= shadeCells; i++ {
 		for j := 0; j <= shadeCells-i; j++ {
 			s.t = append(s.t, float64(i)/shadeCells)
@@ -46,7 +47,8 @@ func TestShadingOfRoughNets(t *testing.T) {
 	r := rand.New(rand.NewPCG(7, 11))
 	tri := triangle{side: 100}
 	for range 5 {
-		s := &shading{tri: tri}
+		s := &shading{}
+		s.put(tri)
 		inside := 0
 		for i := 0; i <= shadeCells; i++ {
 			for j := 0; j <= shadeCells-i; j++ {
