@@ -113,7 +113,11 @@ func (c *checker) underPressure(path string, w *wireMelting, m *Member) {
 		c.add(path+".dV_change_cm3_per_GPa", "there is no change of volume that this could be a change of", "add dV_cm3")
 	}
 	if st.CurveA.Given != st.CurveC.Given {
-		c.add(path+".simon_a_GPa", "a melting curve needs both of its numbers", "give simon_a_GPa and simon_c")
+		there := ".simon_a_GPa"
+		if st.CurveC.Given {
+			there = ".simon_c"
+		}
+		c.add(path+there, "a melting curve needs both of its numbers", "give simon_a_GPa and simon_c")
 	}
 	var given []string
 	for _, q := range []struct {

@@ -33,15 +33,21 @@ func (e *WithoutError) Error() string {
 	return s + "; " + known(e.Known)
 }
 
-// PressureError says that a file does not hold what a pressure needs.
+// PressureError says that a file does not hold what a pressure needs or, with both
+// lists empty, that the pressure itself is at fault.
 type PressureError struct {
 	PressureGPa, ReferenceGPa float64
-	Missing                   []string // members without a change of volume; empty if the pressure itself is at fault
+	Missing                   []string // members without a change of volume
+	Ended                     []string // members whose melting curve has no point at so low a pressure
 }
 
-// Error names the pressure and the members without a change of volume.
+// Error names the pressure and the members that have nothing to say at it.
 func (e *PressureError) Error() string {
-	if len(e.Missing) == 0 {
+	switch {
+	case len(e.Ended) > 0:
+		return fmt.Sprintf("at %g GPa the melting curve of %s (simon_a_GPa) is at or below absolute zero; stay closer to the %g GPa for which the system is given",
+			e.PressureGPa, strings.Join(e.Ended, ", "), e.ReferenceGPa)
+	case len(e.Missing) == 0:
 		return fmt.Sprintf("%g GPa is not a pressure from 0 to %g GPa", e.PressureGPa, maxPressureGPa)
 	}
 	return fmt.Sprintf("the system is given at %g GPa, and its file has no change of volume (dV_cm3) for %s, so nothing can be said at %g GPa; leave the pressure out or add dV_cm3, or for melting slope_C_per_GPa or simon_a_GPa and simon_c",
@@ -130,16 +136,19 @@ func (f *File) pressureChange(pressurePa float64) (float64, error) {
 	}
 	for _, s := range f.Solids {
 		for _, m := range s.Members {
+			name := s.Symbol
+			if len(s.Members) > 1 || m.Symbol != s.Symbol {
+				name += "." + m.Symbol
+			}
 			if !m.State.Compressible() {
-				name := s.Symbol
-				if len(s.Members) > 1 || m.Symbol != s.Symbol {
-					name += "." + m.Symbol
-				}
 				e.Missing = append(e.Missing, name)
+			}
+			if a := m.State.CurveA; a.Given && a.Value*pascal+dP <= 0 {
+				e.Ended = append(e.Ended, name)
 			}
 		}
 	}
-	if len(e.Missing) > 0 {
+	if len(e.Missing)+len(e.Ended) > 0 {
 		return 0, e
 	}
 	return dP, nil

@@ -173,6 +173,46 @@ func TestStandardStates(t *testing.T) {
 	}
 }
 
+// What a file may say of melting under pressure, against the melting points that
+// follow from it by hand.
+func TestUnderPressure(t *testing.T) {
+	const Tm, H = 1473.15, 57.7e3 // of San
+	for _, c := range []struct {
+		says string
+		at   func(dP float64) float64 // melting point, K, dP in Pa
+	}{
+		{"slope_C_per_GPa = 90", func(dP float64) float64 { return Tm + 90*dP/1e9 }},
+		{"dV_cm3 = 6, dV_change_cm3_per_GPa = -0.8", func(dP float64) float64 { return Tm * (1 + (6e-6*dP-0.8e-15*dP*dP/2)/H) }},
+		{"simon_a_GPa = 4, simon_c = 2.5", func(dP float64) float64 { return Tm * math.Pow(1+dP/4e9, 1/2.5) }},
+	} {
+		text := strings.Replace(mixed, "dH_kJ = 57.7, dV_cm3 = 6", "dH_kJ = 57.7, "+c.says, 1)
+		for _, dP := range []float64{-9e4, 0, 1e8, 1e9, 5e9} {
+			s := compile(t, text, 1e5+dP)
+			g := solid(t, s, "San").Members[0].G
+			near(t, c.says, g.At(c.at(dP)), 0, 1e-7)
+			near(t, c.says+": the entropy of fusion stays", g.Slope(1400), H/Tm, 1e-9)
+		}
+	}
+	// a compound melts to the liquid of its composition on its curve, heat capacity
+	// and mixing terms or none
+	text := strings.Replace(mixed, "dCp_J = 20, dV_cm3 = 10", "dCp_J = 20, simon_a_GPa = 3, simon_c = 4", 1)
+	s := compile(t, text, 1e5+2e9)
+	tm := 1373.15 * math.Pow(1+2.0/3, 1/4.0)
+	near(t, "Mid on its melting curve", solid(t, s, "Mid").Members[0].G.At(tm), liquidGibbs(s, [3]float64{1, 1, 0}, tm), 1e-6)
+	// a curve that starts at high pressure has an end below
+	f, err := Parse("x", []byte(strings.Replace(text, "pressure_GPa = 0.0001", "pressure_GPa = 5", 1)))
+	if err != nil {
+		t.Fatal(err)
+	}
+	var pe *PressureError
+	if _, err := f.At(1e9, nil); !errors.As(err, &pe) || !slices.Equal(pe.Ended, []string{"Mid"}) {
+		t.Errorf("got %v, want a *PressureError about Mid", err)
+	}
+	if _, err := f.At(2.5e9, nil); err != nil {
+		t.Error(err)
+	}
+}
+
 func TestAtErrors(t *testing.T) {
 	f, err := Parse("mixed.toml", []byte(mixed))
 	if err != nil {

@@ -55,9 +55,11 @@
 //	[solid.reaction]    from = [{ phase = "symbol", nu = 1 }, …], dH_kJ, dS_J, dV_cm3:
 //	                    this solid minus Σ nu·phases
 //
-// Beside dV_cm3, melting may have dV_change_cm3_per_GPa; in its place slope_C_per_GPa,
-// the initial slope of the melting curve, or simon_a_GPa and simon_c, the curve
-// T = T_C·(1 + P/a)^(1/c) in kelvin (Simon & Glatzel 1929).
+// Beside dV_cm3, melting may have dV_change_cm3_per_GPa, what is added to it by each GPa.
+// In place of both it may have slope_C_per_GPa, the initial slope of the melting curve,
+// from which ΔV follows by Clapeyron's law, or simon_a_GPa and simon_c: the curve
+// T = T_C·(1 + P/a)^(1/c), with T and T_C in kelvin and P above the file's pressure
+// (Simon & Glatzel 1929), which is met exactly at every pressure.
 //
 // ([solid.member.melting] and so on for a member.) A phase is named by its
 // symbol, by SOLID.MEMBER where that is ambiguous, or is a pure liquid component,

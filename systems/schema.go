@@ -179,9 +179,10 @@ func (schema schema) remedyUnknown(key string) string {
 // units are the endings of keys that carry a number; otherUnits are those that
 // someone may write instead.
 var (
-	units      = map[string]bool{"C": true, "kJ": true, "J": true, "J_per_K": true, "cm3": true, "GPa": true}
+	units      = map[string]bool{"C": true, "kJ": true, "J": true, "J_per_K": true, "cm3": true, "GPa": true, "C_per_GPa": true, "a_GPa": true}
 	otherUnits = map[string]bool{
 		"K": true, "F": true, "": true, "cal": true, "kcal": true, "eV": true, "J_per_mol": true, "kJ_per_mol": true,
 		"kJ_per_K": true, "cal_per_K": true, "m3": true, "mm3": true, "Pa": true, "kPa": true, "MPa": true, "bar": true, "kbar": true, "atm": true,
+		"K_per_GPa": true, "K_per_kbar": true, "C_per_kbar": true, "a_kbar": true,
 	}
 )

@@ -30,10 +30,14 @@ type SimonGlatzel struct {
 // melting curve, K/Pa: ΔV = (dT/dP)·ΔH/T.
 func Clapeyron(f Fusion, slope float64) float64 { return slope * f.H / f.T }
 
-// work is ∫ΔV dP, J/mol, over the pressure dP above the reference. Along a measured
-// melting curve it is whatever makes liquid and solid equal at T(P):
+// work is ∫ΔV dP, J/mol, over the pressure dP above the reference. A measured melting
+// curve T(P) says what it must be for liquid and solid to be equal on it, where
+// ΔG_fus = 0 at every P:
 //
 //	−{ΔH(1 − T/T₀) + ΔCp[(T − T₀) − T ln(T/T₀)]}
+//
+// Its derivative at the reference pressure is Clapeyron's ΔV. Taken as the same at all
+// temperatures, it leaves ΔS_fus as it is at the reference pressure.
 func (f Fusion) work(dP float64) float64 {
 	if f.Curve == nil {
 		return f.V*dP + f.VP*dP*dP/2
