@@ -10,8 +10,8 @@ import (
 )
 
 // PressureChart is the temperatures of a system's invariant points against pressure,
-// composed for print: one line for each point, named by its solids, with the changes of
-// kind marked. A zero Style is ColourStyle; a zero WidthMM is the style's.
+// composed for print: one line for each point, named by its solids, a ring where its kind
+// changes, a dot where it comes or goes, and a dotted line where a field does. A zero Style is ColourStyle; a zero WidthMM is the style's.
 type PressureChart struct {
 	Series     *pressure.Series
 	Style      Style
@@ -38,8 +38,9 @@ func (f PressureChart) Scene() (*Scene, error) {
 // pressureDrawing is a chart in the making.
 type pressureDrawing struct {
 	plot
-	s   *pressure.Series
-	sys *gibbs.System
+	s     *pressure.Series
+	sys   *gibbs.System
+	rules []arc // across the chart, where a field comes or goes
 }
 
 func gigapascal(P float64) float64 { return P / 1e9 }
@@ -95,6 +96,7 @@ func (f PressureChart) draw(st Style) *pressureDrawing {
 		d.track(i)
 	}
 	d.words.solve()
+	d.cutRules()
 	d.describe(f, d.putWords())
 	return d
 }
@@ -115,10 +117,7 @@ func (d *pressureDrawing) flag() string {
 func (d *pressureDrawing) track(i int) {
 	st := d.style
 	t := &d.s.Points[i]
-	var pts []Point
-	for _, a := range t.At {
-		pts = append(pts, d.at(gigapascal(d.s.Pressures[a.Index]), celsius(a.Node.T)))
-	}
+	pts := d.places(t)
 	dash := []float64(nil)
 	if t.Edge >= 0 { // a point on an edge of the triangle
 		dash = []float64{1.4, 0.9}
@@ -149,37 +148,109 @@ func (d *pressureDrawing) track(i int) {
 	d.words.ask(l)
 }
 
-// name is the phases of a point, with its edge.
-func (d *pressureDrawing) name(t *pressure.Track) string {
-	phases := append([]int{gibbs.Liquid}, t.Solids...)
-	return assemblage(d.sys, phases)
+// places are the points of a track on the page, up to the changes by which it comes
+// and goes.
+func (d *pressureDrawing) places(t *pressure.Track) (pts []Point) {
+	if t.From != nil {
+		pts = append(pts, d.change(t.From))
+	}
+	for _, a := range t.At {
+		pts = append(pts, d.at(gigapascal(d.s.Pressures[a.Index]), celsius(a.Node.T)))
+	}
+	if t.To != nil {
+		pts = append(pts, d.change(t.To))
+	}
+	return pts
 }
 
-// changes marks the pressures at which points change their kind, and fields come or
-// go.
+// change is the place of the point that changes.
+func (d *pressureDrawing) change(c *pressure.Change) Point {
+	return d.at(gigapascal(c.Pressure), celsius(c.Node.T))
+}
+
+// name is the phases of a point, and its edge where another edge has a point of the
+// same phases.
+func (d *pressureDrawing) name(t *pressure.Track) string {
+	name := assemblage(d.sys, append([]int{gibbs.Liquid}, t.Solids...))
+	same := func(o pressure.Track) bool { return slices.Equal(o.Solids, t.Solids) && o.Edge != t.Edge }
+	if t.Edge >= 0 && slices.ContainsFunc(d.s.Points, same) {
+		c := d.sys.Components
+		ends := [3][2]int{{1, 2}, {0, 2}, {0, 1}}[t.Edge]
+		name += ", " + c[ends[0]].Symbol + "–" + c[ends[1]].Symbol
+	}
+	return name
+}
+
+// changes marks where points change their kind, come or go, and where fields do.
 func (d *pressureDrawing) changes() {
-	st := d.style
-	l := d.scene.Layer("changes")
-	var seen []float64
 	for i := range d.s.Changes {
 		c := &d.s.Changes[i]
-		P := gigapascal(c.Pressure)
-		a, b := d.at(P, d.y.from), d.at(P, d.y.to)
-		if !slices.ContainsFunc(seen, func(v float64) bool { return math.Abs(v-P) < 1e-3*(d.x.to-d.x.from) }) {
-			seen = append(seen, P)
-			l.Path(PathItem{Path: Polyline([]Point{a, b}, false), Stroke: st.dashed(st.Rule, st.Muted, []float64{0.5, 0.8}), Role: "change"})
-			d.words.lines.add(faint, segment{a, b})
+		switch c.Kind {
+		case pressure.FieldGained:
+			d.rule(c, "field gained")
+		case pressure.FieldLost:
+			d.rule(c, "field lost")
+		case pressure.KindChanged:
+			d.ring(c)
 		}
-		if c.Kind != pressure.KindChanged {
-			continue
+	}
+	for i := range d.s.Points {
+		t := &d.s.Points[i]
+		for _, c := range []*pressure.Change{t.From, t.To} {
+			if c == nil {
+				continue
+			}
+			q := d.change(c)
+			d.mark(d.scene.Layer("points"), PathItem{Path: circle(q, dotRadius), Fill: &d.style.Line, Role: "marker"}, q, dotRadius)
 		}
-		q := d.at(P, celsius(c.Node.T))
-		w := white
-		d.mark(d.scene.Layer("points"), PathItem{Path: circle(q, ringRadius*0.8), Fill: &w, Stroke: st.stroke(st.Mark, st.Line)}, q, ringRadius)
-		name := string(c.From) + " → " + string(c.To)
-		t := measure(PlainRuns(name, st.Base, Regular))
-		d.words.ask(label{role: "change", name: name, colour: st.Muted, wordings: []wording{t}, rank: 2,
-			spots: append(about(q, ringRadius, 0, t, 0.5, 1, 2, 3), leaders(q, 1.2, 0, t, 5, 8, 12)...)})
+	}
+}
+
+// ring marks and names a change of kind.
+func (d *pressureDrawing) ring(c *pressure.Change) {
+	st := d.style
+	q := d.change(c)
+	w := white
+	d.mark(d.scene.Layer("points"), PathItem{Path: circle(q, ringRadius*0.8), Fill: &w, Stroke: st.stroke(st.Mark, st.Line), Role: "marker"}, q, ringRadius)
+	name := string(c.From) + " → " + string(c.To)
+	t := measure(PlainRuns(name, st.Base, Regular))
+	d.words.ask(label{role: "change", name: name, colour: st.Muted, wordings: []wording{t}, rank: 2,
+		spots: append(about(q, ringRadius, 0, t, 0.5, 1, 2, 3), leaders(q, 1.2, 0, t, 5, 8, 12)...)})
+}
+
+// rule is a line at a pressure, with what a solid's field does there beside it.
+func (d *pressureDrawing) rule(c *pressure.Change, does string) {
+	st := d.style
+	P := gigapascal(c.Pressure)
+	a, b := d.at(P, d.y.from), d.at(P, d.y.to)
+	line := straight([]Point{a, b})
+	d.rules = append(d.rules, line)
+	d.words.lines.add(faint, line.chords(2.5)...)
+	name := phaseSymbol(d.sys, c.Solid) + ": " + does
+	t := measure(append(FormulaRuns(phaseSymbol(d.sys, c.Solid), st.Base, Regular), PlainRuns(": "+does, st.Base, Regular)...))
+	l := label{role: "change", name: name, colour: st.Muted, wordings: []wording{t}, rank: 3}
+	for k := range 40 {
+		u := 0.97 - 0.94*float64(k)/39
+		q := a.lerp(b, u)
+		for _, side := range []float64{1, -1} {
+			l.spots = append(l.spots, spot{c: q.plus(Point{side * (t.w/2 + roomGap), 0}), cost: 2*(1-u) + 0.3*(1-side), home: &q})
+		}
+	}
+	d.words.ask(l)
+}
+
+// cutRules draws the rules with gaps where words stand.
+func (d *pressureDrawing) cutRules() {
+	st := d.style
+	gaps := d.gaps()
+	for _, r := range d.rules {
+		var path Path
+		for _, piece := range r.without(r.inside(gaps), 0.7) {
+			path.Append(piece.path())
+		}
+		if !path.Empty() {
+			d.scene.Layer("changes").Path(PathItem{Path: path, Stroke: st.dashed(st.Rule, st.Muted, []float64{0.5, 0.8}), Role: "change"})
+		}
 	}
 }
 

@@ -77,6 +77,14 @@ func TestFieldLost(t *testing.T) {
 	if c := s.Changes[i]; c.Solid != 3 || math.Abs(c.Pressure-want) > 1e5 {
 		t.Errorf("solid %d loses its field at %.6f GPa, in closed form AB (3) at %.6f", c.Solid, c.Pressure/1e9, want/1e9)
 	}
+	for _, tr := range s.Points { // all points of AB end at a change, that of A and B alone begins at one
+		if of := slices.Contains(tr.Solids, 3); of != (tr.To != nil) || !of && slices.Contains(tr.Solids, 0) && slices.Contains(tr.Solids, 1) != (tr.From != nil) {
+			t.Errorf("the track of %v on edge %d comes from %+v and goes to %+v", tr.Solids, tr.Edge, tr.From, tr.To)
+		}
+		if c := tr.To; c != nil && (c.Kind != pressure.PointLost || math.Abs(c.Node.T-tr.At[len(tr.At)-1].Node.T) > 60) {
+			t.Errorf("the track of %v on edge %d goes to %+v", tr.Solids, tr.Edge, c)
+		}
+	}
 	if !slices.IsSortedFunc(s.Changes, func(a, b pressure.Change) int { return int(math.Copysign(1, a.Pressure-b.Pressure)) }) {
 		t.Error("the changes are not in the order of their pressures")
 	}

@@ -6,7 +6,8 @@
 // gains or loses its primary field, where a point appears or vanishes, and where it
 // becomes one of another kind, such as a eutectic that turns into a reaction point.
 //
-//	series.go  projections at all pressures, points matched from one to the next
+//	series.go  projections at all pressures
+//	track.go   points matched from one pressure to the next
 //	change.go  the pressures at which something changes, by bisection
 //
 // What comes and goes again between two neighbouring pressures is not seen, so the list

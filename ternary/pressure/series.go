@@ -1,10 +1,8 @@
 package pressure
 
 import (
-	"cmp"
 	"errors"
 	"fmt"
-	"slices"
 
 	"thalweg/ternary/gibbs"
 	"thalweg/ternary/liquidus"
@@ -23,20 +21,6 @@ type Series struct {
 	// locate a change among them: what is said of the points and changes beside them is
 	// not sure.
 	Problems []string
-}
-
-// Track is one invariant point from pressure to pressure: of the same solids, in the
-// triangle or on the same edge.
-type Track struct {
-	Solids []int // indices in System.Solids, gibbs.Liquid for a second liquid
-	Edge   int   // component that is absent, or −1
-	At     []Sight
-}
-
-// Sight is a point at one pressure.
-type Sight struct {
-	Index int // of the pressure
-	Node  liquidus.Node
 }
 
 // most bounds a series.
@@ -72,6 +56,7 @@ func Compute(build Build, pressures []float64) (*Series, error) {
 	if err := s.locate(build); err != nil {
 		return nil, err
 	}
+	s.end()
 	return s, nil
 }
 
@@ -88,97 +73,4 @@ func project(build Build, P float64) (*liquidus.Projection, error) {
 		return nil, fmt.Errorf("%g GPa: %w", P/1e9, err)
 	}
 	return p, nil
-}
-
-// followed reports that a node is an invariant point.
-func followed(n *liquidus.Node) bool {
-	switch n.Kind {
-	case liquidus.Maximum, liquidus.LoopStart, liquidus.AtApex, liquidus.Critical:
-		return false
-	}
-	return true
-}
-
-// points are the invariant points of a projection.
-func points(p *liquidus.Projection) (out []*liquidus.Node) {
-	for i := range p.Nodes {
-		if n := &p.Nodes[i]; followed(n) {
-			out = append(out, n)
-		}
-	}
-	return out
-}
-
-// solids are the phases beside the liquid, sorted.
-func solids(n *liquidus.Node) []int {
-	var out []int
-	for _, s := range n.Solids {
-		out = append(out, s.Phase)
-	}
-	slices.Sort(out)
-	return out
-}
-
-// pairs matches the points of two projections and returns, for each of a, the index of
-// its partner in b, or −1. Partners have the same solids and edge; where several
-// have, those nearest in composition are matched first.
-func pairs(a, b []*liquidus.Node) []int {
-	type pair struct {
-		a, b int
-		d    float64
-	}
-	var all []pair
-	for i, n := range a {
-		for k, m := range b {
-			if n.Edge == m.Edge && slices.Equal(solids(n), solids(m)) {
-				all = append(all, pair{i, k, n.Liquid.Distance(m.Liquid)})
-			}
-		}
-	}
-	slices.SortStableFunc(all, func(x, y pair) int { return cmp.Compare(x.d, y.d) })
-	partner := make([]int, len(a))
-	for i := range partner {
-		partner[i] = -1
-	}
-	taken := make([]bool, len(b))
-	for _, p := range all {
-		if partner[p.a] < 0 && !taken[p.b] {
-			partner[p.a], taken[p.b] = p.b, true
-		}
-	}
-	return partner
-}
-
-// match sorts the points of all projections into tracks, those inside the triangle
-// first, then in the order in which they appear.
-func (s *Series) match() {
-	var before []*liquidus.Node
-	var onTrack []int // of each of them
-	for i, p := range s.Projections {
-		now := points(p)
-		track := make([]int, len(now))
-		for k := range track {
-			track[k] = -1
-		}
-		for j, k := range pairs(before, now) {
-			if k >= 0 {
-				track[k] = onTrack[j]
-			}
-		}
-		for k, n := range now {
-			if track[k] < 0 {
-				track[k] = len(s.Points)
-				s.Points = append(s.Points, Track{Solids: solids(n), Edge: n.Edge})
-			}
-			t := &s.Points[track[k]]
-			t.At = append(t.At, Sight{i, *n})
-		}
-		before, onTrack = now, track
-	}
-	slices.SortStableFunc(s.Points, func(a, b Track) int {
-		if (a.Edge < 0) != (b.Edge < 0) {
-			return cmp.Compare(a.Edge, b.Edge)
-		}
-		return cmp.Compare(a.At[0].Index, b.At[0].Index)
-	})
 }
