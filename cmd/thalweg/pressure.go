@@ -81,6 +81,16 @@ func (o *PressureOptions) check(cmd *cobra.Command) error {
 	return checkTargets(o.Output, o.Figures, o.System)
 }
 
+// pressures are those of the series, Pa, the ends exactly as given.
+func (o *PressureOptions) pressures() (list []float64) {
+	last := float64(o.Count - 1)
+	for k := range o.Count {
+		u := float64(k)
+		list = append(list, (o.From*(last-u)+o.To*u)/last*pascal)
+	}
+	return list
+}
+
 // pressureResult is what the writers of the verb get.
 type pressureResult struct {
 	*subject
@@ -92,14 +102,10 @@ func pressureRun(e *env, o *PressureOptions) error {
 	if err != nil {
 		return err
 	}
-	var list []float64
-	for k := range o.Count {
-		list = append(list, (o.From+(o.To-o.From)*float64(k)/float64(o.Count-1))*pascal)
-	}
+	list := o.pressures()
 	for _, P := range []float64{list[0], list[len(list)-1]} { // said before anything is computed
 		if _, err := s.file.At(P, o.Without); err != nil {
-			u := badSystem(err)
-			return u
+			return badSystem(err)
 		}
 	}
 	bar := e.startProgress(o.Quiet, "pressures", 1)
@@ -124,8 +130,14 @@ func (r *pressureResult) draw(f *figureFlags) error {
 	if err != nil {
 		return err
 	}
-	scene, err := render.PressureChart{Series: r.series, Style: style, WidthMM: f.WidthMM, Provenance: r.provenance("pressure")}.Scene()
+	scene, err := render.PressureChart{Series: r.series, Style: style, WidthMM: f.WidthMM, Provenance: r.provenance(r.span())}.Scene()
 	return f.write(r.subject, scene, err)
+}
+
+// span is the pressures of the series in words.
+func (r *pressureResult) span() string {
+	P := r.series.Pressures
+	return fmt.Sprintf("%d pressures from %s to %s GPa", len(P), short(P[0]/pascal), short(P[len(P)-1]/pascal))
 }
 
 func (r *pressureResult) encode(format string) ([]byte, error) {
@@ -160,112 +172,4 @@ func (r *pressureResult) said(c *pressure.Change) string {
 		return r.pointName(c.Solids, c.Edge) + " appears, " + string(c.Node.Kind)
 	}
 	return r.pointName(c.Solids, c.Edge) + " vanishes"
-}
-
-func (r *pressureResult) text() string {
-	var b strings.Builder
-	s := r.series
-	fmt.Fprintf(&b, "Invariant points against pressure in %s (%s)\n", r.sys.Title, r.sys.Name)
-	fmt.Fprintf(&b, "%s to %s GPa; compositions in %s\n", short(s.Pressures[0]/pascal), short(s.Pressures[len(s.Pressures)-1]/pascal), r.basis.Unit())
-	if len(s.Problems) > 0 {
-		b.WriteString("INCOMPLETE: it could not be completed or failed its own checks\n")
-	}
-	if m := r.metastable(); m != "" {
-		b.WriteString(strings.ToUpper(m[:10]) + m[10:] + "\n")
-	}
-	b.WriteString("\nChanges\n")
-	if len(s.Changes) == 0 {
-		b.WriteString("  none\n")
-	}
-	for i := range s.Changes {
-		c := &s.Changes[i]
-		fmt.Fprintf(&b, "  %8.4f GPa  %s\n", c.Pressure/pascal, r.said(c))
-	}
-	for i := range s.Points {
-		t := &s.Points[i]
-		fmt.Fprintf(&b, "\n%s\n", r.pointName(t.Solids, t.Edge))
-		tab := table{columns: append(append([]column{{head: "P", unit: "GPa"}, {head: "T", unit: "°C"}}, r.percentColumns()...), column{head: "kind", left: true})}
-		for k, a := range t.At {
-			if len(t.At) > 12 && k%((len(t.At)+11)/12) != 0 && k != len(t.At)-1 {
-				continue
-			}
-			row := append([]string{fixed(s.Pressures[a.Index]/pascal, 4), r.temperature(a.Node.T)}, r.percents(a.Node.Liquid)...)
-			tab.row(append(row, string(a.Node.Kind))...)
-		}
-		tab.write(&b)
-	}
-	r.footing(&b)
-	return b.String()
-}
-
-type pressureJSON struct {
-	headJSON
-	PressuresGPa []number       `json:"pressures_GPa"`
-	Points       []trackJSON    `json:"points"`
-	Changes      []changeJSON   `json:"changes"`
-	Problems     []string       `json:"problems"`
-	Provenance   provenanceJSON `json:"provenance"`
-}
-
-type trackJSON struct {
-	Solids []string    `json:"solids"`
-	Edge   []string    `json:"edge"`
-	At     []sightJSON `json:"at"`
-}
-
-type sightJSON struct {
-	PressureGPa  number  `json:"pressure_GPa"`
-	TemperatureC number  `json:"temperature_C"`
-	Kind         string  `json:"kind"`
-	Liquid       amounts `json:"liquid"`
-}
-
-type changeJSON struct {
-	PressureGPa number `json:"pressure_GPa"`
-	Kind        string `json:"kind"`
-	What        string `json:"what"`
-}
-
-func (r *pressureResult) json() pressureJSON {
-	s := r.series
-	j := pressureJSON{headJSON: r.headJSON(len(s.Problems) == 0), PressuresGPa: []number{}, Points: []trackJSON{}, Changes: []changeJSON{}, Problems: list(s.Problems),
-		Provenance: r.provenanceJSON(map[string]any{"basis": r.basis.String(), "without": list(r.sys.Withheld)})}
-	for _, P := range s.Pressures {
-		j.PressuresGPa = append(j.PressuresGPa, number(P/pascal))
-	}
-	for i := range s.Points {
-		t := &s.Points[i]
-		q := trackJSON{Solids: []string{}, Edge: r.edge(&t.At[0].Node), At: []sightJSON{}}
-		for _, p := range t.Solids {
-			q.Solids = append(q.Solids, r.anyPhase(p))
-		}
-		for _, a := range t.At {
-			q.At = append(q.At, sightJSON{number(s.Pressures[a.Index] / pascal), number(celsius(a.Node.T)), string(a.Node.Kind), r.composition(a.Node.Liquid)})
-		}
-		j.Points = append(j.Points, q)
-	}
-	for i := range s.Changes {
-		c := &s.Changes[i]
-		j.Changes = append(j.Changes, changeJSON{number(c.Pressure / pascal), string(c.Kind), r.said(c)})
-	}
-	return j
-}
-
-// csv has one record for each point at each pressure, and one for each change.
-func (r *pressureResult) csv() ([]byte, error) {
-	s := r.series
-	t := newCSV(append([]string{"record", "point", "pressure_GPa", "temperature_C", "kind"}, append(r.heads(""), "status")...)...)
-	state := r.statusCSV(len(s.Problems) == 0)
-	for i := range s.Points {
-		q := &s.Points[i]
-		for _, a := range q.At {
-			row := []string{"point", r.pointName(q.Solids, q.Edge), exact(s.Pressures[a.Index] / pascal), exact(celsius(a.Node.T)), string(a.Node.Kind)}
-			t.row(append(append(row, cells(r.percent(a.Node.Liquid))...), state)...)
-		}
-	}
-	for i := range s.Changes {
-		c := &s.Changes[i]
-		t.row("change", r.said(c), exact(c.Pressure/pascal), "", string(c.Kind), "", "", "", state)
-	}
-	return t.bytes()
 }

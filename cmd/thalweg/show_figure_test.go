@@ -53,6 +53,7 @@ func TestFiguresAreMadeAgain(t *testing.T) {
 		{"melt", "di-an-fo", "--bulk", "Di=30,An=20,Fo=50", "--style", "single-84"},
 		{"section", "di-ab-an", "--at", "1250", "--samples", "rows of samples.csv"},
 		{"join", "di-ab-an", "--to", "An=100", "--from", "Ab=100", "--read", "An=50@1400", "--read=An=20@1300", "--style", "heavy-89"},
+		{"pressure", "di-an-fo", "--to", "1.5", "--count", "4", "--without", "Fo", "--style", "single-84"},
 	} {
 		for _, ending := range figureFormats() {
 			if ending != "pdf" && i > 3 {
