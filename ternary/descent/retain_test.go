@@ -177,3 +177,31 @@ func TestRandomRetention(t *testing.T) {
 		t.Errorf("%d of %d paths were refused", failed, done+failed)
 	}
 }
+
+// A composition on an edge of a system whose liquid can unmix has the path of its
+// neighbours a trace inside the triangle.
+func TestFractionalFromAnEdge(t *testing.T) {
+	sys := pathSystem(t, "fo-an-silica")
+	for _, x := range []ternary.Composition{{0.8, 0, 0.2}, {0.7, 0.3, 0}, {0, 0.5, 0.5}} {
+		in := x
+		for i := range in {
+			in[i] = (in[i] + 1e-7) / (1 + 3e-7)
+		}
+		a, err := descent.Follow(sys, x, descent.Options{Mode: descent.Fractional})
+		if err != nil {
+			t.Errorf("%v: %v", x, err)
+			continue
+		}
+		b, err := descent.Follow(sys, in, descent.Options{Mode: descent.Fractional})
+		if err != nil {
+			t.Errorf("%v: %v", in, err)
+			continue
+		}
+		if !a.Checks.Passed || math.Abs(a.LiquidT-b.LiquidT) > 0.01 {
+			t.Errorf("%v: liquidus %.4f K, beside it %.4f; %v", x, a.LiquidT, b.LiquidT, a.Checks.Problems)
+		}
+	}
+	if _, err := descent.Follow(sys, ternary.Composition{0.3, 0, 0.7}, descent.Options{Mode: descent.Fractional}); err == nil {
+		t.Error("two liquids on the edge are followed as one")
+	}
+}

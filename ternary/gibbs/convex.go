@@ -61,21 +61,30 @@ func (p *Phase) convexAt(T float64) bool {
 
 // ConvexAt reports whether the Gibbs energy is convex at y: whether the phase
 // is stable there against unmixing into neighbours (inside its spinodal it is
-// not). All fractions must be positive.
+// not). End-members of which there is none do not count: a first trace of them
+// always lowers the energy of mixing.
 func (p *Phase) ConvexAt(y [3]float64, T float64) bool {
-	var q Potentials
-	p.Potentials(&y, T, &q)
-	if len(p.Members) == 1 {
+	var here [3]int
+	n := -1 // end-members present, but for the last
+	for k := range p.Members {
+		if y[k] > 0 {
+			n++
+			here[n] = k
+		}
+	}
+	if n < 1 {
 		return true
 	}
+	var q Potentials
+	p.Potentials(&y, T, &q)
 	// Second derivatives along the directions (k, last), scaled by √(y_k·y_l)
 	// so that the ideal part is of order RT everywhere.
-	n := len(p.Members) - 1
 	var h [2][2]float64
-	for a := 0; a < n; a++ {
-		for b := 0; b < n; b++ {
-			v := q.DY[a][b] - q.DY[a][n] - q.DY[n][b] + q.DY[n][n]
-			h[a][b] = v * math.Sqrt(y[a]*y[b])
+	last := here[n]
+	for a, i := range here[:n] {
+		for b, j := range here[:n] {
+			v := q.DY[i][j] - q.DY[i][last] - q.DY[last][j] + q.DY[last][last]
+			h[a][b] = v * math.Sqrt(y[i]*y[j])
 		}
 	}
 	if n == 1 {

@@ -188,3 +188,39 @@ func TestRegularSolution(t *testing.T) {
 		}
 	}
 }
+
+// On an edge and at an apex of its composition a solution is as convex as it is a
+// trace away from there: what is absent does not count.
+func TestConvexWithoutAMember(t *testing.T) {
+	p := (&Phase{Members: []EndMember{{C: ternary.Apex(0)}, {C: ternary.Apex(1)}, {C: ternary.Apex(2)}},
+		Mixing: Mixing{Pairs: []Pair{{0, 1, []TFunc{{A: 20000}}}, {0, 2, []TFunc{{A: 9000}}}, {1, 2, []TFunc{{A: -4000}}}}}}).Prepare()
+	const trace = 1e-9
+	yes, no := 0, 0
+	for absent := range 3 {
+		for _, T := range []float64{300, 700, 1100, 1300} {
+			for f := 0.05; f < 1; f += 0.1 {
+				var edge, near [3]float64
+				edge[(absent+1)%3], edge[(absent+2)%3] = f, 1-f
+				for k := range near {
+					near[k] = edge[k] * (1 - trace)
+				}
+				near[absent] = trace
+				want := p.ConvexAt(near, T)
+				if want {
+					yes++
+				} else {
+					no++
+				}
+				if p.ConvexAt(edge, T) != want {
+					t.Errorf("%v at %g K: convex %v, with a trace of the third %v", edge, T, !want, want)
+				}
+			}
+		}
+		if !p.ConvexAt([3]float64(ternary.Apex(absent)), 300) {
+			t.Errorf("a pure end-member %d is not convex", absent)
+		}
+	}
+	if yes < 10 || no < 10 {
+		t.Errorf("%d convex and %d not: too few of one kind", yes, no)
+	}
+}
