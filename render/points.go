@@ -204,25 +204,25 @@ func diamond(c Point, r float64) Path {
 }
 
 // reaction writes the reaction at a node: what a falling temperature turns
-// into what, by the signs of the coefficients; without them, the phases that
-// coexist.
+// into what; where that is not unique, the phases that coexist.
 func reaction(sys *gibbs.System, n liquidus.Node) string {
 	names := solidNames(sys, n.Solids)
-	left, right := []string{"L"}, []string{}
-	if len(n.Coefficients) != len(names) {
-		return strings.Join(append(left, names...), " + ")
-	}
-	for i, s := range names {
-		if n.Coefficients[i] < 0 {
-			left = append(left, s)
-		} else {
-			right = append(right, s)
+	side := func(list []int) string {
+		var out []string
+		for _, i := range list {
+			if i == liquidus.Itself {
+				out = append(out, "L")
+			} else {
+				out = append(out, names[i])
+			}
 		}
+		return strings.Join(out, " + ")
 	}
-	if len(right) == 0 {
-		return strings.Join(left, " + ")
+	gone, made := n.Reaction()
+	if gone == nil || made == nil {
+		return strings.Join(append([]string{"L"}, names...), " + ")
 	}
-	return strings.Join(left, " + ") + " → " + strings.Join(right, " + ")
+	return side(gone) + " → " + side(made)
 }
 
 // solidNames are the symbols of solids; a phase that is there twice gets a

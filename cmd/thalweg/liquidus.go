@@ -2,7 +2,6 @@ package main
 
 import (
 	"errors"
-	"fmt"
 	"math"
 	"strings"
 
@@ -161,22 +160,25 @@ func (e *env) noticeProjection(s *subject, p *liquidus.Projection, missed []floa
 	}
 }
 
-// reaction writes what a node's liquid does on cooling: L + Fo → En.
+// reaction writes what a node's phases do on cooling: L + Fo → En.
 func (s *subject) reaction(n *liquidus.Node) string {
-	names := s.names(n.Solids)
-	if len(n.Coefficients) != len(names) || len(names) == 0 {
+	gone, made := n.Reaction()
+	if gone == nil {
 		return ""
 	}
-	left, right := []string{s.sys.Liquid.Symbol}, []string{}
-	for i, c := range n.Coefficients {
-		switch {
-		case c < 0:
-			left = append(left, names[i])
-		case c > 0:
-			right = append(right, names[i])
+	names := s.names(n.Solids)
+	side := func(list []int) string {
+		var out []string
+		for _, i := range list {
+			if i == liquidus.Itself {
+				out = append(out, s.sys.Liquid.Symbol)
+			} else {
+				out = append(out, names[i])
+			}
 		}
+		return strings.Join(out, " + ")
 	}
-	return fmt.Sprintf("%s → %s", strings.Join(left, " + "), strings.Join(right, " + "))
+	return side(gone) + " → " + side(made)
 }
 
 // edge names the two components of a point on the triangle's edge.

@@ -55,12 +55,38 @@ type Node struct {
 	// Nil where the reaction is not unique.
 	Coefficients []float64
 	// Heat is what the reaction, read from the liquid to the solids, releases: J
-	// per mole of liquid components. It is negative at a metatectic.
+	// per mole of liquid components. It is negative at a metatectic, and at the
+	// liquid of a monotectic that is made of the other.
 	Heat float64
 	// Conjugate is the index of the node of the second liquid, or -1.
 	Conjugate int
 	// Residual is the largest |driving force| of the solids, divided by RT.
 	Residual float64
+}
+
+// Itself stands, among the phases of a node's reaction, for the node's own liquid.
+const Itself = -1
+
+// Reaction returns what is used up and what is made at the node when heat is taken
+// away: indices in Solids, and Itself first on its side. A phase that takes no part
+// is in neither. Both are empty where the reaction is not unique.
+func (n *Node) Reaction() (gone, made []int) {
+	if len(n.Coefficients) == 0 || len(n.Coefficients) != len(n.Solids) {
+		return nil, nil
+	}
+	gone = append(gone, Itself)
+	for i, c := range n.Coefficients {
+		switch {
+		case c < 0:
+			gone = append(gone, i)
+		case c > 0:
+			made = append(made, i)
+		}
+	}
+	if n.Heat < 0 {
+		return made, gone
+	}
+	return gone, made
 }
 
 // Point is one computed point of a boundary curve.
