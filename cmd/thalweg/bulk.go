@@ -88,7 +88,10 @@ func parseBulk(flag, text string, cs ternary.Components, b ternary.Basis) (x ter
 	return x, sum, nil
 }
 
-// parseAmount reads a finite number that is not negative. The error continues
+// largestAmount keeps sums of amounts, and their products with molar masses, finite.
+const largestAmount = 1e100
+
+// parseAmount reads a number from 0 to largestAmount. The error continues
 // the sentence "the amount of Di, …".
 func parseAmount(text string) (float64, error) {
 	text = strings.TrimSpace(text)
@@ -102,6 +105,8 @@ func parseAmount(text string) (float64, error) {
 		return 0, fmt.Errorf("%q, is not a number", text)
 	case v < 0:
 		return 0, fmt.Errorf("%s, is negative", text)
+	case v > largestAmount:
+		return 0, fmt.Errorf("%s, is too large to be added to others", text)
 	}
 	return v + 0, nil // -0 is 0
 }
