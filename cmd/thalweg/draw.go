@@ -4,8 +4,10 @@ import (
 	"bytes"
 	"errors"
 	"fmt"
+	"io/fs"
 	"os"
 	"path/filepath"
+	"slices"
 	"strings"
 
 	"github.com/spf13/cobra"
@@ -32,8 +34,8 @@ func NewCmdDraw(e *env, runF func(*DrawOptions) error) *cobra.Command {
 		Short: "Compose one figure of several panels from a plan",
 		Long: `Compose one figure of several panels from a plan: projections, isothermal sections,
 joins, and charts of a path (phases, liquid, heat), in a grid with letters, of one or
-several systems, with samples, and with a caption in a file of its own beside each
-figure.
+several systems, with samples. Beside a figure NAME.pdf its caption is written into
+NAME.caption.txt, anew each time; a file of that name from elsewhere is left alone.
 
 A plan is a .toml file. Its settings at the top (system, basis, style, width_mm,
 columns, letters, legend, samples) hold for every panel without its own. A panel has
@@ -119,6 +121,9 @@ func drawRun(e *env, o *DrawOptions) error {
 		return err
 	}
 	d := &drawn{e: e, o: o, plan: p, doc: doc, subjects: map[string]*subject{}}
+	if err := d.guardCaptions(); err != nil {
+		return err
+	}
 	if err := d.look(); err != nil {
 		return err
 	}
@@ -161,7 +166,7 @@ func drawRun(e *env, o *DrawOptions) error {
 	}
 	text := d.caption()
 	var failed []error
-	if p.Caption == nil || *p.Caption {
+	if d.captioned() {
 		for _, path := range o.Figures {
 			failed = append(failed, replaceFile(captionPath(path), []byte(text)))
 		}
@@ -178,6 +183,30 @@ func drawRun(e *env, o *DrawOptions) error {
 // captionPath is the caption's file beside a figure.
 func captionPath(figure string) string {
 	return strings.TrimSuffix(figure, filepath.Ext(figure)) + ".caption.txt"
+}
+
+// captioned reports that captions are written beside the figures.
+func (d *drawn) captioned() bool { return d.plan.Caption == nil || *d.plan.Caption }
+
+// captionMark stands in every caption that draw has written.
+const captionMark = "Computed with " + program + " "
+
+// guardCaptions refuses to replace a file that has the name of a caption but is none:
+// the user did not name it.
+func (d *drawn) guardCaptions() error {
+	if !d.captioned() {
+		return nil
+	}
+	for _, figure := range d.o.Figures {
+		path := captionPath(figure)
+		old, err := os.ReadFile(path)
+		if errors.Is(err, fs.ErrNotExist) || err == nil && bytes.Contains(old, []byte(captionMark)) {
+			continue
+		}
+		return &usageError{Where: path, What: "the figure's caption would replace it, but it is no caption of " + program,
+			Remedy: "rename it, name the figure otherwise, or write caption = false at the top of the plan", Err: err}
+	}
+	return nil
 }
 
 // look is the style of the page: that of the plan, unless flags say otherwise.
@@ -243,21 +272,12 @@ func (d *drawn) caption() string {
 			if v.FittedTo != "" {
 				src = "fitted to " + v.FittedTo
 			}
-			if src != "" && !contains(sources, src) {
+			if src != "" && !slices.Contains(sources, src) {
 				sources = append(sources, src)
 			}
 		}
 	}
 	fmt.Fprintf(&b, "\n\nNumbers of the systems: %s.", strings.TrimSuffix(strings.Join(sources, "; "), "."))
-	fmt.Fprintf(&b, "\n\nComputed with %s %s from %s; temperatures are estimates, as good as these numbers.\n", program, d.main.version, portable(d.o.Plan))
+	fmt.Fprintf(&b, "\n\n%s%s from %s; temperatures are estimates, as good as these numbers.\n", captionMark, d.main.version, portable(d.o.Plan))
 	return b.String()
-}
-
-func contains(list []string, s string) bool {
-	for _, v := range list {
-		if v == s {
-			return true
-		}
-	}
-	return false
 }
