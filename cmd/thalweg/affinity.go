@@ -10,6 +10,7 @@ import (
 	"github.com/spf13/cobra"
 
 	"thalweg/ternary"
+	"thalweg/ternary/descent"
 	"thalweg/ternary/gibbs"
 	"thalweg/ternary/liquidus"
 )
@@ -97,6 +98,7 @@ type affinityResult struct {
 	T         float64 // K
 	primary   gibbs.State
 	liquidusT float64
+	split     bool // into two liquids before the first solid
 	stable    bool // the liquid has no tendency to separate into two
 	solids    []solidForce
 	pairs     []turnover
@@ -148,7 +150,9 @@ func (s *subject) affinity(x ternary.Composition, T float64) (*affinityResult, e
 		return nil, err
 	}
 	r := &affinityResult{subject: s, liquid: x, T: T}
-	r.liquidusT, r.primary = surface.Liquidus(x)
+	if r.liquidusT, r.primary, r.split, err = descent.Liquidus(s.sys, x); err != nil {
+		return nil, err
+	}
 	var pot gibbs.Potentials
 	c := [3]float64(x)
 	s.sys.Liquid.Potentials(&c, T, &pot)
@@ -198,6 +202,9 @@ func (r *affinityResult) text() string {
 	} else {
 		fmt.Fprintf(&b, "its liquidus is at %s °C, with %s\n", r.temperature(r.liquidusT), r.solid(r.primary.Phase))
 	}
+	if r.split {
+		b.WriteString("On cooling it separates into two liquids before that: the saturations below are those of the one liquid.\n")
+	}
 	if !r.stable {
 		b.WriteString("This liquid would separate into two: the forces are those against it as it stands.\n")
 	}
@@ -229,7 +236,8 @@ type affinityJSON struct {
 	TemperatureC number         `json:"temperature_C"`
 	LiquidusC    number         `json:"liquidus_temperature_C"` // null where there is none
 	Primary      string         `json:"primary"`
-	OneLiquid    bool           `json:"stable_against_a_second_liquid"`
+	Split        bool           `json:"two_liquids_before"`             // they come before the first solid
+	OneLiquid    bool           `json:"stable_against_a_second_liquid"` // at the temperature given
 	Solids       []forceJSON    `json:"solids"`
 	SameContents []turnoverJSON `json:"same_contents"`
 	Provenance   provenanceJSON `json:"provenance"`
@@ -251,7 +259,7 @@ type turnoverJSON struct {
 
 func (r *affinityResult) json() affinityJSON {
 	j := affinityJSON{headJSON: r.headJSON(true), Liquid: r.composition(r.liquid), TemperatureC: number(celsius(r.T)), LiquidusC: number(celsius(r.liquidusT)),
-		OneLiquid: r.stable, Solids: []forceJSON{}, SameContents: []turnoverJSON{},
+		Split: r.split, OneLiquid: r.stable, Solids: []forceJSON{}, SameContents: []turnoverJSON{},
 		Provenance: r.provenanceJSON(map[string]any{"basis": r.basis.String(), "pressure_GPa": number(r.sys.Pressure / pascal), "without": list(r.sys.Withheld), "at_C": number(celsius(r.T))})}
 	if !math.IsInf(r.liquidusT, 0) {
 		j.Primary = r.solid(r.primary.Phase)

@@ -2,12 +2,14 @@ package main
 
 import (
 	"errors"
+	"fmt"
 	"math"
 	"strings"
 
 	"github.com/spf13/cobra"
 
 	"thalweg/ternary"
+	"thalweg/ternary/descent"
 	"thalweg/ternary/gibbs"
 	"thalweg/ternary/liquidus"
 )
@@ -83,6 +85,7 @@ type placed struct {
 	sample
 	T       float64 // K; infinite when there is none
 	primary gibbs.State
+	split   bool // into two liquids, before the first solid
 }
 
 func liquidusRun(e *env, o *LiquidusOptions) error {
@@ -125,17 +128,13 @@ func (r *liquidusResult) encode(format string) ([]byte, error) {
 
 // place finds the liquidus of each sample.
 func (s *subject) place(list []sample) ([]placed, error) {
-	if len(list) == 0 {
-		return nil, nil
-	}
-	surface, err := liquidus.NewSurface(s.sys)
-	if err != nil {
-		return nil, err
-	}
 	var out []placed
 	for _, q := range list {
-		T, primary := surface.Liquidus(q.X)
-		out = append(out, placed{q, T, primary})
+		T, primary, split, err := descent.Liquidus(s.sys, q.X)
+		if err != nil {
+			return nil, fmt.Errorf("%s: %w", q.Name, err)
+		}
+		out = append(out, placed{q, T, primary, split})
 	}
 	return out, nil
 }

@@ -78,6 +78,7 @@ type placedJSON struct {
 	Composition  amounts `json:"composition"`
 	TemperatureC number  `json:"liquidus_temperature_C"`
 	First        string  `json:"first_solid"`
+	Split        bool    `json:"two_liquids_before"`
 }
 
 type projectionChecksJSON struct {
@@ -133,7 +134,7 @@ func (r *liquidusResult) json() *liquidusJSON {
 		options.IsothermsC = append(options.IsothermsC, number(celsius(iso.T)))
 	}
 	for _, q := range r.samples {
-		j.Samples = append(j.Samples, placedJSON{q.Name, r.composition(q.X), number(celsius(q.T)), r.first(q)})
+		j.Samples = append(j.Samples, placedJSON{q.Name, r.composition(q.X), number(celsius(q.T)), r.first(q), q.split})
 	}
 	j.Provenance = r.provenanceJSON(options)
 	return j

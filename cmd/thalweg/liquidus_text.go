@@ -249,7 +249,11 @@ func (r *liquidusResult) samplesText(b *strings.Builder) {
 	t.columns = append(t.columns, column{head: "liquidus", unit: "°C"}, column{head: "first solid", left: true}, column{head: "solution", unit: "mol%", left: true})
 	for _, q := range r.samples {
 		row := append([]string{q.Name}, r.percents(q.X)...)
-		t.row(append(row, r.temperature(q.T), r.first(q), r.solution(q.primary))...)
+		first := r.first(q)
+		if q.split {
+			first += ", from two liquids"
+		}
+		t.row(append(row, r.temperature(q.T), first, r.solution(q.primary))...)
 	}
 	t.write(b)
 }

@@ -62,6 +62,11 @@ func Melt(sys *gibbs.System, bulk ternary.Composition, o MeltOptions) (*Path, er
 	if err != nil {
 		return nil, err
 	}
+	if w.splits(w.path.LiquidT) {
+		if w.path.LiquidT, _, _, err = Liquidus(sys, bulk); err != nil {
+			return nil, err
+		}
+	}
 	w.check()
 	return w.path, nil
 }
