@@ -16,7 +16,7 @@ import (
 // The liquidus is where the equilibrium gains its first solid, found here by halving
 // from equilibria alone; melting ends where crystallisation begins.
 func TestLiquidusAgainstEquilibria(t *testing.T) {
-	list := []*gibbs.System{pathSystem(t, "fo-an-silica"), pathSystem(t, "di-ab-an")}
+	list := []*gibbs.System{trial.Builtin(t, "fo-an-silica"), trial.Builtin(t, "di-ab-an")}
 	for seed := int64(1); seed <= 6; seed++ {
 		list = append(list, trial.System(seed, trial.Options{Unmixing: true}))
 	}

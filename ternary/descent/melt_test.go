@@ -68,7 +68,7 @@ func TestBatchMeltingIsCrystallisationReversed(t *testing.T) {
 // eutectic of the other two, at its temperature; then the last solid at its
 // melting point.
 func TestFractionalMeltingLeaps(t *testing.T) {
-	sys := pathSystem(t, "lif-naf-kf")
+	sys := trial.Builtin(t, "lif-naf-kf")
 	pr, err := liquidus.Compute(sys, liquidus.Options{})
 	if err != nil {
 		t.Fatal(err)
@@ -132,7 +132,7 @@ func TestFractionalMeltingLeaps(t *testing.T) {
 // Fractional melting of a solid solution by another road: small rises of T, each
 // followed by the removal of all melt; two step lengths extrapolated.
 func TestFractionalMeltingByRemoval(t *testing.T) {
-	sys := pathSystem(t, "di-ab-an")
+	sys := trial.Builtin(t, "di-ab-an")
 	x, _ := sys.Components.Composition([3]float64{30, 35, 35}, ternary.Mass)
 	p := melted(t, sys, x, descent.MeltOptions{Mode: descent.FractionalMelting, Steps: 400})
 	start := p.Steps[0].T
@@ -210,7 +210,7 @@ func BenchmarkMeltBatch(b *testing.B)      { benchmarkMelt(b, descent.BatchMelti
 func BenchmarkMeltFractional(b *testing.B) { benchmarkMelt(b, descent.FractionalMelting) }
 
 func benchmarkMelt(b *testing.B, m descent.Mode) {
-	sys := pathSystem(b, "di-ab-an")
+	sys := trial.Builtin(b, "di-ab-an")
 	x, _ := sys.Components.Composition([3]float64{30, 35, 35}, ternary.Mass)
 	b.ReportAllocs()
 	for b.Loop() {

@@ -5,7 +5,6 @@ import (
 	"math/rand"
 	"testing"
 
-	"thalweg/systems"
 	"thalweg/ternary"
 	"thalweg/ternary/descent"
 	"thalweg/ternary/gibbs"
@@ -13,19 +12,6 @@ import (
 	"thalweg/ternary/liquidus"
 	"thalweg/ternary/tangent"
 )
-
-func pathSystem(t testing.TB, name string) *gibbs.System {
-	t.Helper()
-	f, err := systems.Builtin(name)
-	if err != nil {
-		t.Fatal(err)
-	}
-	sys, err := f.AtReference(nil)
-	if err != nil {
-		t.Fatal(err)
-	}
-	return sys
-}
 
 func pathOf(t testing.TB, sys *gibbs.System, x ternary.Composition, m descent.Mode) *descent.Path {
 	t.Helper()
@@ -42,7 +28,7 @@ func pathOf(t testing.TB, sys *gibbs.System, x ternary.Composition, m descent.Mo
 // The main job's sample: first plagioclase, then diopside; the fractional path
 // ends where the cotectic is coldest, the equilibrium path at a solidus inside.
 func TestHaplobasaltPaths(t *testing.T) {
-	sys := pathSystem(t, "di-ab-an")
+	sys := trial.Builtin(t, "di-ab-an")
 	x, err := sys.Components.Composition([3]float64{30, 35, 35}, ternary.Mass)
 	if err != nil {
 		t.Fatal(err)
@@ -86,7 +72,7 @@ func TestHaplobasaltPaths(t *testing.T) {
 // Simple systems end at their eutectic, whatever the mode.
 func TestPathsEndAtTheEutectic(t *testing.T) {
 	for _, name := range []string{"di-an-fo", "lif-naf-kf"} {
-		sys := pathSystem(t, name)
+		sys := trial.Builtin(t, name)
 		pr, err := liquidus.Compute(sys, liquidus.Options{})
 		if err != nil {
 			t.Fatal(err)
@@ -225,7 +211,7 @@ func TestRandomPaths(t *testing.T) {
 // steps of T with the solids thrown away after each; its error falls with the
 // step, and two steps extrapolated meet the path.
 func TestFractionalByRemoval(t *testing.T) {
-	sys := pathSystem(t, "di-ab-an")
+	sys := trial.Builtin(t, "di-ab-an")
 	x, _ := sys.Components.Composition([3]float64{30, 35, 35}, ternary.Mass)
 	p := pathOf(t, sys, x, descent.Fractional)
 	const target = 1460.0 // K, on the cotectic
@@ -270,7 +256,7 @@ func lagrange(x, x0, x1, x2, y0, y1, y2 float64) float64 {
 // Away from a stoichiometric solid the liquid moves in a straight line, and the
 // melt left follows the lever rule.
 func TestStraightLine(t *testing.T) {
-	sys := pathSystem(t, "lif-naf-kf")
+	sys := trial.Builtin(t, "lif-naf-kf")
 	x := ternary.Composition{0.2, 0.6, 0.2}
 	for _, m := range []descent.Mode{descent.Fractional, descent.Equilibrium} {
 		p := pathOf(t, sys, x, m)
@@ -296,7 +282,7 @@ func TestStraightLine(t *testing.T) {
 // The heat released against the integral of T dS over the rows (trapezoid), and
 // for the whole of a pure component against its heat of fusion.
 func TestHeat(t *testing.T) {
-	sys := pathSystem(t, "lif-naf-kf")
+	sys := trial.Builtin(t, "lif-naf-kf")
 	p := pathOf(t, sys, ternary.Apex(1), descent.Equilibrium)
 	m := sys.Components.MolarMasses()[1]
 	// 33.346 kJ/mol: NIST-JANAF Thermochemical Tables, 4th ed. 1998, table F-035
@@ -364,7 +350,7 @@ func BenchmarkPathFractional(b *testing.B)  { benchmarkPath(b, descent.Fractiona
 func BenchmarkPathEquilibrium(b *testing.B) { benchmarkPath(b, descent.Equilibrium) }
 
 func benchmarkPath(b *testing.B, m descent.Mode) {
-	sys := pathSystem(b, "di-ab-an")
+	sys := trial.Builtin(b, "di-ab-an")
 	x, _ := sys.Components.Composition([3]float64{30, 35, 35}, ternary.Mass)
 	b.ReportAllocs()
 	for b.Loop() {

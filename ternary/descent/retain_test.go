@@ -26,7 +26,7 @@ func meltAt(p *descent.Path, T float64) float64 {
 // the equilibrium path, with less and less the fractional one, and in between the
 // melt left at one temperature lies between theirs in order.
 func TestRetainJoinsTheLimits(t *testing.T) {
-	sys := pathSystem(t, "di-ab-an")
+	sys := trial.Builtin(t, "di-ab-an")
 	x, _ := sys.Components.Composition([3]float64{30, 35, 35}, ternary.Mass)
 	const T = 1470.0
 	follow := func(keep float64) *descent.Path {
@@ -67,7 +67,7 @@ func TestRetainJoinsTheLimits(t *testing.T) {
 // over small steps of T, then removal of half of each solid's growth; two step
 // lengths extrapolated.
 func TestRetainByRemoval(t *testing.T) {
-	sys := pathSystem(t, "di-ab-an")
+	sys := trial.Builtin(t, "di-ab-an")
 	x, _ := sys.Components.Composition([3]float64{30, 35, 35}, ternary.Mass)
 	const keep, target = 0.5, 1470.0
 	p, err := descent.Follow(sys, x, descent.Options{Mode: descent.Fractional, Retain: keep, Steps: 400})
@@ -110,7 +110,7 @@ func TestRetainByRemoval(t *testing.T) {
 // What is left after all solids were taken out at T is the liquid of that moment:
 // from there the path is that of the liquid alone.
 func TestRemovalOfAll(t *testing.T) {
-	sys := pathSystem(t, "di-ab-an")
+	sys := trial.Builtin(t, "di-ab-an")
 	x, _ := sys.Components.Composition([3]float64{30, 35, 35}, ternary.Mass)
 	const T = 1500.0
 	p, err := descent.Follow(sys, x, descent.Options{Removals: []descent.Removal{{T: T}}})
@@ -181,7 +181,7 @@ func TestRandomRetention(t *testing.T) {
 // A composition on an edge of a system whose liquid can unmix has the path of its
 // neighbours a trace inside the triangle.
 func TestFractionalFromAnEdge(t *testing.T) {
-	sys := pathSystem(t, "fo-an-silica")
+	sys := trial.Builtin(t, "fo-an-silica")
 	for _, x := range []ternary.Composition{{0.8, 0, 0.2}, {0.7, 0.3, 0}, {0, 0.5, 0.5}} {
 		in := x
 		for i := range in {

@@ -6,6 +6,7 @@ import (
 
 	"thalweg/ternary"
 	"thalweg/ternary/descent"
+	"thalweg/ternary/internal/trial"
 	"thalweg/ternary/liquidus"
 )
 
@@ -33,7 +34,7 @@ func TestPathsWithSilica(t *testing.T) {
 		{"ab-or-silica", [3]float64{55, 35, 10}, descent.Equilibrium, liquidus.Minimum, true},
 	}
 	for _, c := range cases {
-		sys := pathSystem(t, c.system)
+		sys := trial.Builtin(t, c.system)
 		x, err := sys.Components.Composition(c.wt, ternary.Mass)
 		if err != nil {
 			t.Fatal(err)

@@ -17,19 +17,6 @@ import (
 
 var long = flag.Bool("long", false, "run the long variants of the tests")
 
-func builtin(t testing.TB, name string) *gibbs.System {
-	t.Helper()
-	f, err := systems.Builtin(name)
-	if err != nil {
-		t.Fatal(err)
-	}
-	sys, err := f.AtReference(nil)
-	if err != nil {
-		t.Fatal(err)
-	}
-	return sys
-}
-
 func compute(t testing.TB, sys *gibbs.System, from, to ternary.Composition, o join.Options) *join.Diagram {
 	t.Helper()
 	d, err := join.Compute(sys, from, to, o)
@@ -46,7 +33,7 @@ func compute(t testing.TB, sys *gibbs.System, from, to ternary.Composition, o jo
 // checks; the horizontals of an edge are the invariant points of the projection.
 func TestBuiltinJoins(t *testing.T) {
 	for _, name := range systems.Names() {
-		sys := builtin(t, name)
+		sys := trial.Builtin(t, name)
 		pr, err := liquidus.Compute(sys, liquidus.Options{})
 		if err != nil {
 			t.Fatal(err)
@@ -196,7 +183,7 @@ func TestSymmetricSolvus(t *testing.T) {
 // Lever rule by hand, and tie lines that end on the curves: at T the liquid's
 // composition is where the liquidus is at T.
 func TestReading(t *testing.T) {
-	sys := builtin(t, "di-ab-an")
+	sys := trial.Builtin(t, "di-ab-an")
 	d := compute(t, sys, ternary.Apex(1), ternary.Apex(2), join.Options{})
 	const X, T = 0.5, 1700.0
 	q, err := d.Read(X, T)
@@ -228,7 +215,7 @@ func TestReading(t *testing.T) {
 }
 
 func TestRefusals(t *testing.T) {
-	sys := builtin(t, "di-ab-an")
+	sys := trial.Builtin(t, "di-ab-an")
 	for _, j := range [][2]ternary.Composition{{{1, 0, 0}, {1, 0, 0}}, {{1.2, -0.2, 0}, {0, 0, 1}}} {
 		if _, err := join.Compute(sys, j[0], j[1], join.Options{}); err == nil {
 			t.Errorf("no error for %v", j)
@@ -253,7 +240,7 @@ func ExampleCompute() {
 }
 
 func BenchmarkJoin(b *testing.B) {
-	sys := builtin(b, "di-ab-an")
+	sys := trial.Builtin(b, "di-ab-an")
 	for _, j := range []struct {
 		name     string
 		from, to ternary.Composition

@@ -30,7 +30,7 @@ func blend(states []gibbs.State) (b ternary.Composition) {
 func TestReactionsAgainstEquilibria(t *testing.T) {
 	var list []*gibbs.System
 	for _, name := range systems.Names() {
-		list = append(list, builtin(t, name))
+		list = append(list, trial.Builtin(t, name))
 	}
 	for _, c := range trial.Cases() {
 		list = append(list, c.System)
@@ -84,7 +84,7 @@ func TestReactionsAgainstEquilibria(t *testing.T) {
 
 // The lines of two binaries by their names.
 func TestRoles(t *testing.T) {
-	sys := builtin(t, "di-ab-an")
+	sys := trial.Builtin(t, "di-ab-an")
 	d := compute(t, sys, ternary.Apex(1), ternary.Apex(2), join.Options{Count: 20})
 	var roles []string
 	for i := range d.Lines {
@@ -107,7 +107,7 @@ func TestRoles(t *testing.T) {
 // of anorthite, 278.204 g, is 56.231 % anorthite (masses from the formulas, IUPAC
 // standard atomic weights).
 func TestShare(t *testing.T) {
-	d := &join.Diagram{System: builtin(t, "di-ab-an"), From: ternary.Apex(0), To: ternary.Apex(2)}
+	d := &join.Diagram{System: trial.Builtin(t, "di-ab-an"), From: ternary.Apex(0), To: ternary.Apex(2)}
 	if got, want := d.Share(0.5, ternary.Mass), 278.204/(216.550+278.204); math.Abs(got-want) > 1e-5 {
 		t.Errorf("share by mass %.6f, want %.6f", got, want)
 	}

@@ -5,6 +5,7 @@ import (
 	"testing"
 
 	"thalweg/ternary"
+	"thalweg/ternary/internal/trial"
 	"thalweg/ternary/join"
 )
 
@@ -30,7 +31,7 @@ func crossing(t *testing.T, d *join.Diagram, role string, T float64) float64 {
 // The loop of the plagioclases as measured by Bowen 1913, Am. J. Sci. 35, 577–599 (from
 // memory), wt% anorthite at temperatures in °C; none of it was used in a fit.
 func TestPlagioclaseLoop(t *testing.T) {
-	sys := builtin(t, "di-ab-an")
+	sys := trial.Builtin(t, "di-ab-an")
 	d := compute(t, sys, ternary.Apex(1), ternary.Apex(2), join.Options{})
 	for _, r := range []struct {
 		role  string

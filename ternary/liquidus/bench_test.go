@@ -6,6 +6,7 @@ import (
 	"time"
 
 	"thalweg/ternary"
+	"thalweg/ternary/internal/trial"
 	"thalweg/ternary/liquidus"
 )
 
@@ -15,7 +16,7 @@ func BenchmarkSolution(b *testing.B) { benchmark(b, "di-ab-an") }
 func BenchmarkEutectic(b *testing.B) { benchmark(b, "lif-naf-kf") }
 
 func benchmark(b *testing.B, name string) {
-	sys := builtin(b, name)
+	sys := trial.Builtin(b, name)
 	o := liquidus.Options{Isotherms: spread(whole(b, sys, liquidus.Options{}), 20)}
 	b.ReportAllocs()
 	for b.Loop() {
@@ -151,7 +152,7 @@ const gridTarget = 1e-6
 func BenchmarkAgainstGrid(b *testing.B) {
 	for _, name := range []string{"di-ab-an", "lif-naf-kf"} {
 		b.Run(name, func(b *testing.B) {
-			sys := builtin(b, name)
+			sys := trial.Builtin(b, name)
 			o := liquidus.Options{Isotherms: spread(whole(b, sys, liquidus.Options{}), 20)}
 			s := surface(b, sys)
 			p := whole(b, sys, o)

@@ -30,7 +30,7 @@ func subjects(t testing.TB) []subject {
 	t.Helper()
 	var out []subject
 	for _, name := range systems.Names() {
-		out = append(out, subject{name, builtin(t, name)})
+		out = append(out, subject{name, trial.Builtin(t, name)})
 	}
 	for _, name := range []string{"island", "polymorphs", "ring", "join", "hugging"} {
 		out = append(out, subject{name, trial.CaseNamed(name)})
@@ -54,19 +54,6 @@ func oneLiquid(t testing.TB) (out []subject) {
 		}
 	}
 	return out
-}
-
-func builtin(t testing.TB, name string) *gibbs.System {
-	t.Helper()
-	f, err := systems.Builtin(name)
-	if err != nil {
-		t.Fatal(err)
-	}
-	sys, err := f.AtReference(nil)
-	if err != nil {
-		t.Fatal(err)
-	}
-	return sys
 }
 
 // whole computes a projection that must pass its own checks.

@@ -5,9 +5,8 @@ import (
 	"slices"
 	"testing"
 
-	"thalweg/systems"
 	"thalweg/ternary"
-	"thalweg/ternary/gibbs"
+	"thalweg/ternary/internal/trial"
 	"thalweg/ternary/liquidus"
 )
 
@@ -85,26 +84,13 @@ func area(b ternary.Basis, solid string) func(*testing.T, *liquidus.Projection) 
 	}
 }
 
-func builtinSystem(t *testing.T, name string) *gibbs.System {
-	t.Helper()
-	f, err := systems.Builtin(name)
-	if err != nil {
-		t.Fatal(err)
-	}
-	sys, err := f.AtReference(nil)
-	if err != nil {
-		t.Fatal(err)
-	}
-	return sys
-}
-
 func TestPublishedPoints(t *testing.T) {
 	done := map[string]*liquidus.Projection{}
 	for _, row := range slices.Concat(publishedTable, silicaTable) {
 		p := done[row.system]
 		if p == nil {
 			var err error
-			if p, err = liquidus.Compute(builtinSystem(t, row.system), liquidus.Options{}); err != nil {
+			if p, err = liquidus.Compute(trial.Builtin(t, row.system), liquidus.Options{}); err != nil {
 				t.Fatal(err)
 			}
 			if !p.Checks.Passed {
@@ -127,7 +113,7 @@ func TestPublishedPoints(t *testing.T) {
 // The cotectic of di-ab-an falls steadily from one end to the other: one arc,
 // with no extremum to cut it.
 func TestCotecticFallsSteadily(t *testing.T) {
-	p, err := liquidus.Compute(builtinSystem(t, "di-ab-an"), liquidus.Options{})
+	p, err := liquidus.Compute(trial.Builtin(t, "di-ab-an"), liquidus.Options{})
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -145,7 +131,7 @@ func TestCotecticFallsSteadily(t *testing.T) {
 // The plagioclase loop of Bowen 1913, Am. J. Sci. 35, 577–599 (from memory), wt%
 // anorthite at temperatures in °C; none of it was used in a fit.
 func TestPlagioclaseLoop(t *testing.T) {
-	sys := builtinSystem(t, "di-ab-an")
+	sys := trial.Builtin(t, "di-ab-an")
 	pl, _ := sys.SolidIndex("Pl")
 	surf, err := liquidus.NewSurface(sys)
 	if err != nil {

@@ -14,19 +14,6 @@ import (
 	"thalweg/ternary/tangent"
 )
 
-func builtin(t testing.TB, name string) *gibbs.System {
-	t.Helper()
-	f, err := systems.Builtin(name)
-	if err != nil {
-		t.Fatal(err)
-	}
-	sys, err := f.AtReference(nil)
-	if err != nil {
-		t.Fatal(err)
-	}
-	return sys
-}
-
 func compute(t testing.TB, sys *gibbs.System, T float64) *section.Section {
 	t.Helper()
 	s, err := section.Compute(sys, T, section.Options{})
@@ -45,7 +32,7 @@ func TestRegionsAgainstEquilibria(t *testing.T) {
 	r := rand.New(rand.NewSource(1))
 	tested := 0
 	for _, name := range []string{"di-ab-an", "di-an-fo", "lif-naf-kf", "fo-an-silica", "ab-or-silica"} {
-		sys := builtin(t, name)
+		sys := trial.Builtin(t, name)
 		for k := 0; k < 8; k++ {
 			T := 730 + 1100*r.Float64()
 			s := compute(t, sys, T)
@@ -146,7 +133,7 @@ func TestRandomSections(t *testing.T) {
 // Every tie line's ends lie on the plane of the equilibrium of its middle, and the
 // lever rule gives the middle equal amounts of its ends.
 func TestTieLines(t *testing.T) {
-	sys := builtin(t, "di-ab-an")
+	sys := trial.Builtin(t, "di-ab-an")
 	s := compute(t, sys, 1480)
 	tested := 0
 	for i := range s.Regions {
@@ -185,7 +172,7 @@ func TestTieLines(t *testing.T) {
 // The closed form of an ideal loop: at T, liquid and solid of two components that
 // both mix ideally have x_i/y_i = exp(−ΔH_i/R·(1/T − 1/T_i)).
 func TestIdealLoop(t *testing.T) {
-	sys := builtin(t, "di-ab-an")
+	sys := trial.Builtin(t, "di-ab-an")
 	const T = 1600.0
 	s := compute(t, sys, T)
 	ab := math.Exp(-62800 / ternary.R * (1/T - 1/(1118+ternary.ZeroCelsius)))
@@ -247,7 +234,7 @@ func TestLiquidGap(t *testing.T) {
 }
 
 func TestRefusals(t *testing.T) {
-	sys := builtin(t, "di-ab-an")
+	sys := trial.Builtin(t, "di-ab-an")
 	for _, T := range []float64{0, -5, math.NaN()} {
 		if _, err := section.Compute(sys, T, section.Options{}); err == nil {
 			t.Errorf("no error at %g K", T)
@@ -272,7 +259,7 @@ func ExampleCompute() {
 }
 
 func BenchmarkSection(b *testing.B) {
-	sys := builtin(b, "di-ab-an")
+	sys := trial.Builtin(b, "di-ab-an")
 	for b.Loop() {
 		if _, err := section.Compute(sys, 1480, section.Options{}); err != nil {
 			b.Fatal(err)

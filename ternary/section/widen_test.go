@@ -58,7 +58,7 @@ func TestOutsideSolid(t *testing.T) {
 // cristobalite a sliver of liquid lies beside pure silica, narrower than the mesh of
 // an edge: the tie lines on both sides of it are found.
 func TestNarrowLiquid(t *testing.T) {
-	sys := builtin(t, "fo-an-silica")
+	sys := trial.Builtin(t, "fo-an-silica")
 	for _, celsius := range []float64{1693.5, 1694, 1696, 1700, 1705, 1712, 1713, 1720} {
 		compute(t, sys, celsius+ternary.ZeroCelsius)
 	}

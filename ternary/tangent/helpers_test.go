@@ -24,15 +24,7 @@ func subjects(t testing.TB) []subject {
 	t.Helper()
 	var out []subject
 	for _, name := range systems.Names() {
-		f, err := systems.Builtin(name)
-		if err != nil {
-			t.Fatal(err)
-		}
-		sys, err := f.AtReference(nil)
-		if err != nil {
-			t.Fatal(err)
-		}
-		out = append(out, subject{name: name, sys: sys})
+		out = append(out, subject{name: name, sys: trial.Builtin(t, name)})
 	}
 	for _, name := range []string{"polymorphs", "ring"} {
 		out = append(out, subject{name: name, sys: trial.CaseNamed(name)})
